@@ -1,0 +1,2 @@
+/** All routes of the API. A noun's table is added here once. */
+export const apiRoutes = {} as const;
