@@ -1,2 +1,6 @@
 /** All routes of the API. A noun's table is added here once. */
-export const apiRoutes = {} as const;
+import { accountRoutes } from './account.ts';
+import { jobRoutes, serverRoutes } from './jobs.ts';
+import { studioRoutes } from './studio.ts';
+
+export const apiRoutes = { ...accountRoutes, ...studioRoutes, ...jobRoutes, ...serverRoutes } as const;

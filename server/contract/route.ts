@@ -5,7 +5,8 @@
 import type { z } from 'zod';
 
 /**
- * Who may call. `helper`, `maker` and `owner` are the least role in the studio named by `:studioId`; each includes those
+ * Who may call. `helper`, `maker` and `owner` are the least role in the studio named by `:studioId`
+ * (by `?studioId=` where the path has none); each includes those
  * after it in the order owner, maker, helper. Nothing else in the server decides about roles.
  */
 export type Access = 'anyone' | 'signed-in' | 'helper' | 'maker' | 'owner';

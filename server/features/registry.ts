@@ -1,0 +1,9 @@
+/** Every noun of the application, put together once. A new noun is listed here and nowhere else. */
+import type { Deps, Feature } from '../feature.ts';
+import { createJobRoutes } from '../jobs/jobs.routes.ts';
+import { createAccount } from './account/account.routes.ts';
+import { createStudio } from './studio/studio.routes.ts';
+
+export function createFeatures(deps: Deps): Feature[] {
+  return [createAccount(deps), createStudio(deps), createJobRoutes(deps)];
+}
