@@ -27,7 +27,7 @@ export const jobRoutes = routes({
     query: z.object({ subjectId: Id.optional() }), response: z.object({ items: z.array(Job) }),
   },
   'GET /studios/:studioId/jobs/:id': { summary: 'One job', access: 'helper', params: StudioItemParams, response: Job },
-  'POST /studios/:studioId/jobs/:id/cancel': { summary: 'Stop a job', access: 'helper', params: StudioItemParams, response: Job },
+  'POST /studios/:studioId/jobs/:id/cancel': { summary: 'Stop a job', access: 'maker', params: StudioItemParams, response: Job },
   'GET /events': {
     summary: 'News of a studio as server-sent events: `job` with its progress, `changed` with what to ask for again',
     access: 'helper', query: z.object({ studioId: Id }), produces: 'text/event-stream',
