@@ -137,7 +137,6 @@ export type StampSet = z.infer<typeof StampSet>;
 
 const SetFields = { name: Name, mount: Mount.default('clear'), storagePlace: StoragePlace.default(''), note: Note.default('') };
 const PictureParams = z.object({ studioId: Id, id: Id, pictureId: Id });
-const picture = '/studios/:studioId/stamp-sets/:id/pictures/:pictureId' as const;
 
 export const PictureResult = z.object({ picture: Picture, sentiments: z.array(Sentiment) });
 export type PictureResult = z.infer<typeof PictureResult>;
@@ -171,34 +170,36 @@ export const stampSetRoutes = routes({
     summary: 'Add a picture, which is read', access: 'maker', costly: true, params: StudioItemParams, status: 202,
     upload: { field: 'picture', maxBytes: PICTURE_BYTES }, body: z.object({ mirrored: z.stringbool().default(false) }), response: Picture,
   },
-  [`PUT ${picture}`]: {
+  'PUT /studios/:studioId/stamp-sets/:id/pictures/:pictureId': {
     summary: 'Replace a picture by another of the same stamps; corrections stay where they fit', access: 'maker', costly: true, params: PictureParams, status: 202,
     upload: { field: 'picture', maxBytes: PICTURE_BYTES }, body: z.object({ version: z.coerce.number().int().min(1) }), response: Picture,
   },
-  [`DELETE ${picture}`]: { summary: 'Take a picture and its sentiments away', access: 'maker', params: PictureParams },
-  [`POST ${picture}/restore`]: { summary: 'Bring a picture and its sentiments back', access: 'maker', params: PictureParams, response: Picture },
-  [`GET ${picture}/image`]: {
+  'DELETE /studios/:studioId/stamp-sets/:id/pictures/:pictureId': { summary: 'Take a picture and its sentiments away', access: 'maker', params: PictureParams },
+  'POST /studios/:studioId/stamp-sets/:id/pictures/:pictureId/restore': { summary: 'Bring a picture and its sentiments back', access: 'maker', params: PictureParams, response: Picture },
+  'GET /studios/:studioId/stamp-sets/:id/pictures/:pictureId/image': {
     summary: 'The picture turned upright, not flipped: for the page (view) or for a card (small)', access: 'helper', params: PictureParams,
     query: z.object({ size: z.enum(['view', 'small']).default('view'), key: z.string().max(80).optional() }), produces: 'image/jpeg',
   },
-  [`GET ${picture}/reading`]: {
+  'GET /studios/:studioId/stamp-sets/:id/pictures/:pictureId/reading': {
     summary: 'What was read in the picture, before scale, gap and corrections of the person', access: 'helper', params: PictureParams,
     response: z.object({ pictureId: Id, version: Version, reading: z.custom<Reading>() }),
   },
-  [`PUT ${picture}/corrections`]: {
+  'PUT /studios/:studioId/stamp-sets/:id/pictures/:pictureId/corrections': {
     summary: 'Store scale, grouping gap and corrections; sentiments follow', access: 'maker', params: PictureParams,
     body: z.object({ version: Version, scale: Scale, groupingGap: GroupingGap, corrections: Corrections }), response: PictureResult,
   },
-  [`POST ${picture}/read`]: {
+  'POST /studios/:studioId/stamp-sets/:id/pictures/:pictureId/read': {
     summary: 'Read the picture again: flipped, or within the corners of its sheet', access: 'maker', costly: true, params: PictureParams, status: 202,
     body: z.object({ version: Version, mirrored: z.boolean().optional() }), response: JobAccepted,
   },
-  [`POST ${picture}/words`]: { summary: 'Recognise the words of the sentiments that nobody has named', access: 'maker', costly: true, params: PictureParams, status: 202, response: JobAccepted },
+  'POST /studios/:studioId/stamp-sets/:id/pictures/:pictureId/words': { summary: 'Recognise the words of the sentiments that nobody has named', access: 'maker', costly: true, params: PictureParams, status: 202, response: JobAccepted },
 
   'GET /studios/:studioId/sentiments': { summary: 'Sentiments of all stamp sets', access: 'helper', params: StudioParams, query: SentimentQuery, response: page(Sentiment.extend({ stampSetName: z.string(), mount: Mount })) },
   'GET /studios/:studioId/sentiments/:id': { summary: 'One sentiment with its outline', access: 'helper', params: StudioItemParams, response: Sentiment.extend({ artwork: Outline.nullable() }) },
   'GET /studios/:studioId/sentiments/:id/drawing': {
-    summary: 'The outline as a picture, true to proportion', access: 'helper', params: StudioItemParams, query: z.object({ version: z.coerce.number().int().optional() }), produces: 'image/svg+xml',
+    summary: 'The outline as a picture, true to proportion', access: 'helper', params: StudioItemParams, 
+    // Any text that changes with the outline, so that browsers may keep the drawing.
+    query: z.object({ key: z.string().max(80).optional() }), produces: 'image/svg+xml',
   },
   'POST /studios/:studioId/stamp-sets/:id/sentiments': {
     summary: 'Add a sentiment by its size, without a picture', access: 'maker', params: StudioItemParams, status: 201,
