@@ -17,7 +17,7 @@ export interface Place { x: number; y: number; border: number }
 /** A place this much worse is still equally good: rounding of sizes is a thousand times finer than any ruler. */
 const EQUALLY_GOOD_MM = 1e-9;
 /** Farther than any centre can lie from the area's. */
-const REACH_MM = 1e5;
+export const REACH_MM = 1e5;
 
 export function convexFit(edges: HalfPlanes, artwork: TurnedArtwork, target: Point): Place {
   const constraints = placeConstraints(edges, artwork.hull);
@@ -57,14 +57,19 @@ export function borderAtPlace(c: BorderConstraints, x: number, y: number): numbe
 function centredPlace(c: BorderConstraints, best: Place, target: Point): Point {
   const enough = best.border - EQUALLY_GOOD_MM;
   if (borderAtPlace(c, target.x, target.y) >= enough) return target;
-  // The places that are good enough form a convex sliver: a point, or a line of no width.
-  let sliver: Ring = [{ x: -REACH_MM, y: -REACH_MM }, { x: REACH_MM, y: -REACH_MM }, { x: REACH_MM, y: REACH_MM }, { x: -REACH_MM, y: REACH_MM }];
-  for (let i = 0; i < c.count * 4 && sliver.length > 0; i += 4) sliver = clipToHalfPlane(sliver, c.rows[i], c.rows[i + 1], c.rows[i + 3] - enough);
-  return nearestOnRing(sliver, target) ?? best;
+  // The places that are good enough form a sliver: a point, or a line of no width.
+  return nearestOnRing(placesWithBorder(c, enough, 0, 0, REACH_MM), target) ?? best;
 }
 
-/** Nearest point to p, which lies outside the ring. */
-function nearestOnRing(ring: Ring, p: Point): Point | null {
+/** The convex ring of all places with at least this border, within a square round (x, y); empty where there is none. */
+export function placesWithBorder(c: BorderConstraints, border: number, x: number, y: number, reach: number): Ring {
+  let ring: Ring = [{ x: x - reach, y: y - reach }, { x: x + reach, y: y - reach }, { x: x + reach, y: y + reach }, { x: x - reach, y: y + reach }];
+  for (let i = 0; i < c.count * 4 && ring.length > 0; i += 4) ring = clipToHalfPlane(ring, c.rows[i], c.rows[i + 1], c.rows[i + 3] - c.rows[i + 2] * border);
+  return ring;
+}
+
+/** Nearest point to p, which lies outside the ring; null of an empty ring. */
+export function nearestOnRing(ring: Ring, p: Point): Point | null {
   let nearest: Point | null = null, leastSq = Infinity;
   ring.forEach((a, i) => {
     const b = ring[(i + 1) % ring.length];

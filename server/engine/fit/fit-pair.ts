@@ -27,7 +27,7 @@ export function fitPair(artwork: PreparedArtwork, die: PreparedDie, options: Fit
   for (const turnDeg of turnsDeg) {
     const place = fitAtTurn(artwork, die, turnDeg, best === null ? -Infinity : best.border);
     bound = Math.max(bound, place.bound);
-    const margin = die.convex ? BETTER_TURN_CONVEX_MM : BETTER_TURN_SEARCHED_MM;
+    const margin = die.concave === null ? BETTER_TURN_CONVEX_MM : BETTER_TURN_SEARCHED_MM;
     if (best === null || place.border > best.border + margin) best = place;
   }
   if (best === null) throw new Error('At least one turn is always tried.');
@@ -38,11 +38,11 @@ export function fitPair(artwork: PreparedArtwork, die: PreparedDie, options: Fit
 export function fitAtTurn(artwork: PreparedArtwork, die: PreparedDie, angleDeg: number, worthMm: number): ProvenPlace {
   const turned = turnArtwork(artwork, angleDeg);
   const target = centredTarget(die, turned);
-  if (die.convex) {
+  if (die.concave === null) {
     const place = convexFit(die.halfPlanes, turned, target);
     return { ...place, bound: place.border, artwork: turned };
   }
-  return { ...concaveFit(artwork, turned, die, target, SEARCH_GAP_MM, worthMm), artwork: turned };
+  return { ...concaveFit(artwork, turned, die, die.concave, { target, gapMm: SEARCH_GAP_MM, worthMm }), artwork: turned };
 }
 
 function described(die: PreparedDie, place: ProvenPlace, bound: number, options: FitOptions): Fit {

@@ -3,12 +3,15 @@
  * coordinates are those of its cut line's box, an artwork's are relative to the centre of its (unturned) box.
  * Bad artwork (no points, no numbers) throws and says which. Nothing is mutated.
  */
+import { DistanceField } from '../geometry/distance-field.ts';
 import { outlineHull } from '../geometry/hull.ts';
 import { isConvexRing } from '../geometry/offset.ts';
 import { boxCentre, outlineArea, outlineBox, ringBox } from '../geometry/ring.ts';
 import { rotatePoint } from '../geometry/transform.ts';
 import type { Box, Outline, Point, Ring } from '../geometry/types.ts';
+import { prepareConcaveArea, type ConcaveArea } from './concave-area.ts';
 import { dieOutline, usableOutline } from './die-outline.ts';
+import { buildInkTree, type InkTree } from './ink-tree.ts';
 import type { DieGeometry } from './types.ts';
 
 /** Edges of a convex ring as half-planes n·p ≤ limit, n pointing outwards, in the order of their angle. */
@@ -22,7 +25,8 @@ export interface PreparedDie {
   areaBox: Box;
   /** Hull of the area. */
   halfPlanes: HalfPlanes;
-  convex: boolean;
+  /** Null where the area is convex: the half-planes are the area then. */
+  concave: ConcaveArea | null;
   /** Added to every border: minus the inset where it leaves nothing, else 0. */
   shiftMm: number;
   /** The stitch line leaves nothing: no ink fits, whatever the border says. */
@@ -37,9 +41,10 @@ export function prepareDie(die: DieGeometry): PreparedDie {
   // to 0 as the inset shrinks: the figure a person expects beside "does not fit".
   const area = nothingUsable ? cut : usable;
   const hull = outlineHull(area);
+  const convex = area.rings.length === 1 && isConvexRing(area.rings[0]);
   return {
     cut, cutAreaMm2: outlineArea(cut), area, areaBox: outlineBox(area), halfPlanes: halfPlanesOf(hull),
-    convex: area.rings.length === 1 && isConvexRing(area.rings[0]),
+    concave: convex ? null : prepareConcaveArea(area),
     shiftMm: nothingUsable ? -(die.stitchInsetMm ?? 0) : 0, nothingUsable,
   };
 }
@@ -63,6 +68,8 @@ export interface PreparedArtwork {
   hull: Ring;
   /** Greatest distance of ink from the middle of the smallest circle found round it: how far a turn can move ink if the place may follow. */
   swingMm: number;
+  /** Only for areas that are not convex; worked out when first asked for. */
+  ink(): { tree: InkTree; field: DistanceField };
 }
 
 export function prepareArtwork(artwork: Outline): PreparedArtwork {
@@ -73,7 +80,8 @@ export function prepareArtwork(artwork: Outline): PreparedArtwork {
   const centre = boxCentre(outlineBox(artwork));
   const rings = artwork.rings.filter((ring) => ring.length > 0).map((ring) => ring.map((p) => ({ x: p.x - centre.x, y: p.y - centre.y })));
   const hull = outlineHull({ rings });
-  return { rings, hull, swingMm: swing(hull) };
+  let ink: { tree: InkTree; field: DistanceField } | undefined;
+  return { rings, hull, swingMm: swing(hull), ink: () => (ink ??= { tree: buildInkTree(rings), field: new DistanceField({ rings }) }) };
 }
 
 /**
