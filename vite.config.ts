@@ -12,9 +12,9 @@ export default defineConfig({
     projects: [
       { extends: true, test: { name: 'engine', include: ['tests/engine/**/*.test.ts', 'tests/standards/**/*.test.ts'], environment: 'node', testTimeout: 60_000 } },
       { extends: true, test: { name: 'client', include: ['tests/client/**/*.test.ts'], environment: 'happy-dom' } },
-      { extends: true, test: { name: 'api', include: ['tests/api/**/*.test.ts'], environment: 'node', testTimeout: 30_000, hookTimeout: 60_000 } },
-      { extends: true, test: { name: 'faults', include: ['tests/faults/**/*.test.ts'], environment: 'node', testTimeout: 120_000, hookTimeout: 60_000, fileParallelism: false } },
-      { extends: true, test: { name: 'browser', include: ['tests/browser/**/*.test.ts'], environment: 'node', testTimeout: 240_000, hookTimeout: 120_000, fileParallelism: false } },
+      { extends: true, test: { name: 'api', globalSetup: 'tests/api/cluster.ts', include: ['tests/api/**/*.test.ts'], environment: 'node', testTimeout: 30_000, hookTimeout: 60_000 } },
+      { extends: true, test: { name: 'faults', globalSetup: 'tests/api/cluster.ts', include: ['tests/faults/**/*.test.ts'], environment: 'node', testTimeout: 120_000, hookTimeout: 60_000, fileParallelism: false } },
+      { extends: true, test: { name: 'browser', globalSetup: 'tests/api/cluster.ts', include: ['tests/browser/**/*.test.ts'], environment: 'node', testTimeout: 240_000, hookTimeout: 120_000, fileParallelism: false } },
     ],
   },
 });
