@@ -1,11 +1,19 @@
 import vue from '@vitejs/plugin-vue';
+import type { Plugin } from 'vite';
 import { defineConfig } from 'vitest/config';
+import { tokenStyles } from './src/theme/tokens.ts';
 
 /** Where the server listens during development; the client's own server hands `/api` on to it. */
 const apiTarget = process.env.API_TARGET ?? 'http://127.0.0.1:3000';
 
+/** Colours stand in the page itself, so that its first paint has the right ground in either appearance. */
+const tokensInPage: Plugin = {
+  name: 'tokens-in-page',
+  transformIndexHtml: () => [{ tag: 'style', injectTo: 'head-prepend', children: tokenStyles() }],
+};
+
 export default defineConfig({
-  plugins: [vue()],
+  plugins: [vue(), tokensInPage],
   build: { outDir: 'dist/client', emptyOutDir: true, sourcemap: false, target: 'es2022' },
   server: { host: '127.0.0.1', proxy: { '/api': apiTarget } },
   test: {
