@@ -34,10 +34,26 @@ export interface Reading {
   links: { a: number; b: number; gapMm: number | null; gapPx: number }[];
   sentiments: ReadSentiment[];
   warnings: { code: string; message: string }[];
+  /** Corners of the sheet in the picture, where they are known: only ink within them is read. */
+  sheetPx?: Point[];
+  /** Parts that splits divided, as they were read; `parts` has their pieces instead. */
+  undivided?: ReadPart[];
+  /** What this grouping was asked for, so that a scale given later groups alike. */
+  grouping?: { gap: number | 'auto'; corrections: Corrections };
 }
 
 /** One connected piece of ink. */
-export interface ReadPart { id: number; boxPx: Box; areaPx2: number; areaMm2: number | null; /** In picture px, not moved to its own corner. */ outlinePx: Outline; thinnestStrokeMm: number | null }
+export interface ReadPart {
+  id: number;
+  boxPx: Box;
+  areaPx2: number;
+  areaMm2: number | null;
+  /** In picture px, not moved to its own corner. The first ring goes round the outside. */
+  outlinePx: Outline;
+  thinnestStrokeMm: number | null;
+  /** Set for pieces of a part that a split divided: that part's id. */
+  dividedFrom?: number;
+}
 
 export interface ReadSentiment {
   partIds: number[];

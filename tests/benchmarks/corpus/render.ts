@@ -1,0 +1,20 @@
+/** Drawings in mm → pixels, by resvg: another renderer than the one that reads fonts for the ground truth. */
+import { Resvg } from '@resvg/resvg-js';
+import type { Ring } from '../../../server/engine/geometry/types.ts';
+
+export interface Raster { width: number; height: number; rgba: Uint8Array }
+export interface Painted { rings: Ring[]; fill: string; evenOdd?: boolean }
+
+export function pathData(rings: readonly Ring[]): string {
+  return rings.map((ring) => `M${ring.map((p) => `${p.x.toFixed(4)} ${p.y.toFixed(4)}`).join('L')}Z`).join('');
+}
+
+/** `paper` null leaves the ground transparent. */
+export function renderSheet(widthMm: number, heightMm: number, pxPerMm: number, painted: readonly Painted[], paper: string | null): Raster {
+  const width = Math.round(widthMm * pxPerMm), height = Math.round(heightMm * pxPerMm);
+  const paths = painted.map((p) => `<path fill="${p.fill}" fill-rule="${p.evenOdd ? 'evenodd' : 'nonzero'}" d="${pathData(p.rings)}"/>`).join('');
+  const ground = paper === null ? '' : `<rect width="${width}" height="${height}" fill="${paper}"/>`;
+  const svg = `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${height}">${ground}<g transform="scale(${pxPerMm})">${paths}</g></svg>`;
+  const image = new Resvg(svg).render();
+  return { width: image.width, height: image.height, rgba: new Uint8Array(image.pixels) };
+}
