@@ -33,7 +33,7 @@ export interface ClosablePool extends EnginePool { close(): Promise<void> }
 export function createEnginePool(threads: number): ClosablePool {
   const piscina = new Piscina({
     filename: fileURLToPath(new URL('./pool-worker.ts', import.meta.url)),
-    execArgv: ['--import', import.meta.resolve('tsx')],
+    execArgv: ['--import', new URL('./register-tsx.mjs', import.meta.url).href],
     minThreads: 1,
     maxThreads: threads,
     // Loading OpenCV and the fonts takes a second; a thread that has them is worth keeping.

@@ -1,12 +1,17 @@
 /** What worker threads can do, by name. Every engine door that takes longer than a moment is here. */
 import type { Control } from '../engine/control.ts';
+import type { DieGeometry, FitOptions } from '../engine/fit/types.ts';
+import type { Outline } from '../engine/geometry/types.ts';
+import type { ReadOptions } from '../engine/reading/types.ts';
 
 type Task = (input: never, control: Control) => Promise<unknown>;
 
 const all = {
   bcryptHash: async (input: { digest: string; cost: number }) => (await import('bcryptjs')).hashSync(input.digest, input.cost),
   bcryptCompare: async (input: { digest: string; hash: string }) => (await import('bcryptjs')).compareSync(input.digest, input.hash),
+  readStampSheet: async (input: { file: Uint8Array; options: ReadOptions }, control) => (await import('../engine/reading/index.ts')).readStampSheet(input.file, input.options, control),
   pictureViews: async (input: { file: Uint8Array }) => (await import('../features/stamp-sets/picture-views.ts')).pictureViews(input),
+  fitTable: async (input: { artworks: Outline[]; dies: DieGeometry[]; options?: FitOptions }) => (await import('../engine/fit/index.ts')).fitTable(input.artworks, input.dies, input.options),
 } satisfies Record<string, Task>;
 
 export const tasks: Record<string, ((input: unknown, control: Control) => Promise<unknown>) | undefined> = all as never;
