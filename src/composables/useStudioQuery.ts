@@ -1,0 +1,44 @@
+import { useQuery, useQueryCache } from '@pinia/colada';
+import type { EntryKey, UseQueryReturn } from '@pinia/colada';
+import { storeToRefs } from 'pinia';
+import { toValue } from 'vue';
+import type { MaybeRefOrGetter } from 'vue';
+import type { ApiError } from '../api/api-error.ts';
+import { useStudio } from '../stores/studio.ts';
+
+interface StudioQueryOptions<T> {
+  /** As the server names it in its `changed` news: `stamp-sets`, `members` … */
+  noun: string;
+  /** What else the answer depends on: an id, the list's search. */
+  key?: MaybeRefOrGetter<EntryKey>;
+  read: (studioId: string) => Promise<T>;
+  enabled?: MaybeRefOrGetter<boolean>;
+}
+
+/**
+ * Data of the studio at hand. Asked for again when the server tells that the noun changed, whoever changed it.
+ * `data`, `error`, `status` ('pending' | 'error' | 'success'), `isLoading`, `refetch` as Pinia Colada gives them.
+ */
+export function useStudioQuery<T>({ noun, key, read, enabled }: StudioQueryOptions<T>): UseQueryReturn<T, ApiError> {
+  const { id } = storeToRefs(useStudio());
+  return useQuery<T, ApiError>({
+    key: () => studioKey(id.value ?? '', noun, ...(toValue(key) ?? [])),
+    query: () => read(id.value!),
+    enabled: () => id.value !== null && (toValue(enabled) ?? true),
+    // A list keeps its rows while the next page comes, so that nothing jumps.
+    placeholderData: (previous) => previous as undefined,
+  });
+}
+
+export function studioKey(studioId: string, noun: string, ...rest: EntryKey): EntryKey {
+  return ['studio', studioId, noun, ...rest];
+}
+
+/** Makes the pages that show a noun ask again; call it after an own change. */
+export function useRefresh(): (...nouns: string[]) => Promise<void> {
+  const cache = useQueryCache();
+  const studio = useStudio();
+  return async (...nouns) => {
+    await Promise.all(nouns.map((noun) => cache.invalidateQueries({ key: studioKey(studio.id ?? '', noun) })));
+  };
+}

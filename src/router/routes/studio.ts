@@ -1,0 +1,8 @@
+import type { RouteRecordRaw } from 'vue-router';
+
+export const studioRoutes: RouteRecordRaw[] = [
+  { path: 'studio', redirect: (to) => ({ name: 'members', params: to.params }) },
+  { path: 'studio/members', name: 'members', component: () => import('../../views/MembersView.vue') },
+  { path: 'studio/settings', name: 'settings', component: () => import('../../views/SettingsView.vue') },
+  { path: 'studio/activity', name: 'activity', component: () => import('../../views/ActivityView.vue') },
+];
