@@ -9,22 +9,27 @@
  */
 import type { DistanceField } from '../geometry/distance-field.ts';
 import { sinCos } from '../geometry/transform.ts';
-import type { Box } from '../geometry/types.ts';
+import type { Box, Point } from '../geometry/types.ts';
 import type { ConcaveArea } from './concave-area.ts';
-import type { InkTree } from './ink-tree.ts';
+import { turnInkTree, type InkTree } from './ink-tree.ts';
+import type { PreparedArtwork, TurnedArtwork } from './prepared.ts';
 
 export interface TurnedInk {
   tree: InkTree;
   /** Of the unturned artwork. */
   field: DistanceField;
+  /** Likewise, of its long edges alone. */
+  longEdges: DistanceField | null;
   sin: number;
   cos: number;
   /** Of the turned ink, relative to its centre. */
   box: Box;
 }
 
-export function turnedInk(tree: InkTree, field: DistanceField, angleDeg: number, box: Box): TurnedInk {
-  return { tree, field, box, ...sinCos(angleDeg) };
+/** The artwork's box is that of the turned ink. */
+export function turnedInk(artwork: PreparedArtwork, { angleDeg, box }: TurnedArtwork): TurnedInk {
+  const { tree, field, longEdges } = artwork.ink();
+  return { tree: turnInkTree(tree, angleDeg), field, longEdges, box, ...sinCos(angleDeg) };
 }
 
 /** Ink farther out than what was found by less than this is not looked for. */
@@ -35,6 +40,11 @@ export function borderInArea(area: ConcaveArea, ink: TurnedInk, x: number, y: nu
   const { field } = area;
   const { tree } = ink;
   let border = Infinity;
+  for (let k = 0; k < tree.outermost.length; k++) {
+    const e = tree.outermost[k];
+    border = Math.min(border, field.signed(tree.ax[e] + x, tree.ay[e] + y));
+    if (border < below) return border;
+  }
   for (let i = 0; i < tree.nodes;) {
     // No ink of this circle can be lower than its middle less its radius.
     const least = field.signed(tree.x[i] + x, tree.y[i] + y) - tree.radius[i];
@@ -53,13 +63,15 @@ export function borderInArea(area: ConcaveArea, ink: TurnedInk, x: number, y: nu
 
 function withReflexCorners(area: ConcaveArea, ink: TurnedInk, x: number, y: number, soFar: number): number {
   let border = soFar;
-  for (const v of area.reflex) {
+  for (const group of area.reflex) {
     if (border <= 0) break;
-    const px = v.x - x, py = v.y - y;
-    if (outsideBox(ink.box, px, py) >= border) continue;
-    const clear = -inkDistance(ink, px, py);
-    // Swallowed by ink: part of the edge runs inside it, and what is outside there is deeper than nothing.
-    border = Math.min(border, clear > 0 ? clear : -DEPTH_EPS_MM);
+    if (farFromInk(ink, group.x - x, group.y - y, border + group.radius)) continue;
+    for (const v of group.corners) {
+      if (outsideBox(ink.box, v.x - x, v.y - y) >= border) continue;
+      const clear = -inkDistance(ink, v.x - x, v.y - y);
+      // Swallowed by ink: part of the edge runs inside it, and what is outside there is deeper than nothing.
+      border = Math.min(border, clear > 0 ? clear : -DEPTH_EPS_MM);
+    }
   }
   for (const pole of area.poles) if (-pole.depthMm < border && inkDistance(ink, pole.x - x, pole.y - y) > 0) border = -pole.depthMm;
   return border;
@@ -67,7 +79,18 @@ function withReflexCorners(area: ConcaveArea, ink: TurnedInk, x: number, y: numb
 
 /** Above 0 in ink. The point is relative to the artwork's centre; it is turned back into the unturned artwork. */
 export function inkDistance(ink: TurnedInk, px: number, py: number): number {
-  return ink.field.signed(ink.cos * px + ink.sin * py, ink.cos * py - ink.sin * px);
+  const p = unturned(ink, px, py);
+  return ink.field.signed(p.x, p.y);
+}
+
+/** In the unturned artwork's coordinates. */
+export function unturned(ink: TurnedInk, px: number, py: number): Point {
+  return { x: ink.cos * px + ink.sin * py, y: ink.cos * py - ink.sin * px };
+}
+
+/** No ink within `reach` of the point: by the box where that is enough, else by the ink itself. */
+export function farFromInk(ink: TurnedInk, px: number, py: number, reach: number): boolean {
+  return outsideBox(ink.box, px, py) >= reach || -inkDistance(ink, px, py) >= reach;
 }
 
 export function outsideBox(box: Box, x: number, y: number): number {

@@ -9,9 +9,10 @@
  * For a reflex corner v of the area and an ink edge the same holds with the roles changed. The hull's half-planes
  * hold for all places. Lengths mm. Rows are written into the given constraints; nothing else is mutated.
  */
+import type { DistanceField } from '../geometry/distance-field.ts';
 import type { ConcaveArea } from './concave-area.ts';
 import { addConstraint, type BorderConstraints } from './border-programme.ts';
-import { inkDistance, outsideBox, type TurnedInk } from './border-in-area.ts';
+import { outsideBox, unturned, type TurnedInk } from './border-in-area.ts';
 
 export interface Surroundings { area: ConcaveArea; ink: TurnedInk; /** Of the area's hull, for every place. */ hull: BorderConstraints }
 
@@ -39,6 +40,9 @@ function addSlope(out: BorderConstraints, x: number, y: number, d: number, gx: n
   addConstraint(out, -gx, -gy, 1, d + err - gx * x - gy * y);
 }
 
+/** Larger ink is held from several sides by several of its points; a dot or a stroke has only itself. */
+const FEW_EDGES = 24;
+
 function addInkBounds({ area, ink }: Surroundings, x: number, y: number, reach: number, r: number, out: BorderConstraints, climb: boolean): void {
   const { field } = area;
   const { tree } = ink;
@@ -47,35 +51,29 @@ function addInkBounds({ area, ink }: Surroundings, x: number, y: number, reach: 
     for (let e = tree.from[i]; e < tree.to[i]; e++) {
       const px = tree.ax[e] + x, py = tree.ay[e] + y;
       const signed = field.signed(px, py);
-      if (signed <= reach && (signed > 0 || climb)) addPairs(area, px, py, signed, x, y, reach, r, out, climb);
+      if (signed > reach || (signed <= 0 && !climb)) continue;
+      const near = field.nearestEdge;
+      addEdgeSlope(field, near, px, py, signed, x, y, r, out, climb);
+      if (tree.edges <= FEW_EDGES && signed > 0) addOtherWay(area, near, px, py, signed, x, y, reach, r, out);
     }
     i = tree.to[i] > tree.from[i] ? tree.after[i] : i + 1;
   }
 }
 
-/** The nearest edge to p, and the nearest that lies another way: a corridor blocks on both sides. */
-function addPairs({ field }: ConcaveArea, px: number, py: number, signed: number, x: number, y: number, reach: number, r: number, out: BorderConstraints, climb: boolean): void {
+/** The nearest edge that lies another way than the nearest of all: a corridor blocks on both sides. */
+function addOtherWay({ field }: ConcaveArea, near: number, px: number, py: number, d: number, x: number, y: number, reach: number, r: number, out: BorderConstraints): void {
+  const t = field.shareAlong(near, px, py);
+  const nearX = px - field.ax[near] - t * field.dx[near], nearY = py - field.ay[near] - t * field.dy[near];
   const candidates = field.candidates(px, py);
-  const d = Math.abs(signed);
-  let nearX = 0, nearY = 0, other = -1, otherSq = Infinity;
+  let other = -1, otherSq = reach * reach;
   for (let k = 0; k < candidates.length; k++) {
     const e = candidates[k], distSq = field.distSq(e, px, py);
-    if (distSq > d * d * (1 + 1e-12) + 1e-18) continue;
-    const t = field.shareAlong(e, px, py);
-    nearX = px - field.ax[e] - t * field.dx[e];
-    nearY = py - field.ay[e] - t * field.dy[e];
-    addEdgeSlope(field, e, px, py, signed, x, y, r, out, climb);
-    break;
-  }
-  if (signed <= 0) return;
-  for (let k = 0; k < candidates.length; k++) {
-    const e = candidates[k], distSq = field.distSq(e, px, py);
-    if (distSq >= otherSq || distSq > reach * reach) continue;
-    const t = field.shareAlong(e, px, py);
-    const ex = px - field.ax[e] - t * field.dx[e], ey = py - field.ay[e] - t * field.dy[e];
+    if (distSq >= otherSq) continue;
+    const u = field.shareAlong(e, px, py);
+    const ex = px - field.ax[e] - u * field.dx[e], ey = py - field.ay[e] - u * field.dy[e];
     if (ex * nearX + ey * nearY < 0.5 * Math.sqrt(distSq) * d) { other = e; otherSq = distSq; }
   }
-  if (other >= 0) addEdgeSlope(field, other, px, py, Math.sqrt(otherSq), x, y, r, out, climb);
+  if (other >= 0) addEdgeSlope(field, other, px, py, Math.sqrt(otherSq), x, y, r, out, false);
 }
 
 function addEdgeSlope(field: ConcaveArea['field'], e: number, px: number, py: number, signed: number, x: number, y: number, r: number, out: BorderConstraints, climb: boolean): void {
@@ -92,25 +90,36 @@ function addEdgeSlope(field: ConcaveArea['field'], e: number, px: number, py: nu
 /** No direction can be told of a distance below rounding. */
 const TOUCHING_MM = 1e-9;
 
+/** Short edges need no rows of their own: their ends have them. */
 function addCornerBounds({ area, ink }: Surroundings, x: number, y: number, reach: number, r: number, out: BorderConstraints, climb: boolean): void {
-  const { field } = ink;
-  for (const v of area.reflex) {
-    const px = v.x - x, py = v.y - y;
-    if (outsideBox(ink.box, px, py) > reach) continue;
-    const d = -inkDistance(ink, px, py);
-    if (d > reach || d < TOUCHING_MM || (d <= r && !climb)) continue;
-    // In the unturned artwork's coordinates.
-    const ux = ink.cos * px + ink.sin * py, uy = ink.cos * py - ink.sin * px;
-    const candidates = field.candidates(ux, uy);
-    for (let k = 0; k < candidates.length; k++) {
-      const e = candidates[k];
-      if (field.distSq(e, ux, uy) > d * d * (1 + 1e-12)) continue;
-      const t = field.shareAlong(e, ux, uy), length = Math.hypot(field.dx[e], field.dy[e]);
-      const wx = (ux - field.ax[e] - t * field.dx[e]) / d, wy = (uy - field.ay[e] - t * field.dy[e]) / d;
-      // Ink that moves towards v comes nearer: the slope is against the way from ink to v, turned back onto the page.
-      const gx = -(ink.cos * wx - ink.sin * wy), gy = -(ink.sin * wx + ink.cos * wy);
-      addSlope(out, x, y, d, gx, gy, climb || (t * length >= r && (1 - t) * length >= r) ? 0 : (r * r) / (2 * d));
-      break;
+  const { longEdges } = ink;
+  if (longEdges === null) return;
+  for (const group of area.reflex) {
+    const gx = group.x - x, gy = group.y - y, within = reach + group.radius;
+    if (outsideBox(ink.box, gx, gy) > within) continue;
+    const g = unturned(ink, gx, gy);
+    if (Math.abs(longEdges.signed(g.x, g.y)) > within) continue;
+    for (const v of group.corners) {
+      if (outsideBox(ink.box, v.x - x, v.y - y) <= reach) addCorner(ink, longEdges, v.x - x, v.y - y, x, y, reach, r, out, climb);
     }
+  }
+}
+
+/** The corner at (px, py) from the artwork's centre, and the ink's long edge that is nearest to it. */
+function addCorner(ink: TurnedInk, edges: DistanceField, px: number, py: number, x: number, y: number, reach: number, r: number, out: BorderConstraints, climb: boolean): void {
+  const u = unturned(ink, px, py);
+  const d = Math.abs(edges.signed(u.x, u.y));
+  if (d > reach || d < TOUCHING_MM || (d <= r && !climb)) return;
+  const candidates = edges.candidates(u.x, u.y);
+  for (let k = 0; k < candidates.length; k++) {
+    const e = candidates[k];
+    if (edges.distSq(e, u.x, u.y) > d * d * (1 + 1e-12)) continue;
+    const t = edges.shareAlong(e, u.x, u.y), length = Math.hypot(edges.dx[e], edges.dy[e]);
+    const wx = (u.x - edges.ax[e] - t * edges.dx[e]) / d, wy = (u.y - edges.ay[e] - t * edges.dy[e]) / d;
+    // Ink that moves towards the corner comes nearer: the slope is against the way from ink to corner, turned back onto the page.
+    const gx = -(ink.cos * wx - ink.sin * wy), gy = -(ink.sin * wx + ink.cos * wy);
+    const staysOnEdge = t * length >= r && (1 - t) * length >= r;
+    addSlope(out, x, y, d, gx, gy, climb || staysOnEdge ? 0 : (r * r) / (2 * d));
+    return;
   }
 }

@@ -5,22 +5,45 @@
  * Input and output mm, in the die's coordinates. Cost: a grid of 48 × 48 questions to the field. Nothing is mutated.
  */
 import { DistanceField } from '../geometry/distance-field.ts';
-import { ringContains, signedArea } from '../geometry/ring.ts';
+import { boxCentre, outlineBox, ringBox, ringContains, signedArea } from '../geometry/ring.ts';
 import type { Outline, Point, Ring } from '../geometry/types.ts';
 
 export interface ConcaveArea {
   field: DistanceField;
-  reflex: Point[];
+  reflex: ReflexGroup[];
   poles: (Point & { depthMm: number })[];
 }
 
+/** Neighbouring reflex corners, as those of one arc, with a circle round them: most groups are told apart from the ink as a whole. */
+export interface ReflexGroup { x: number; y: number; radius: number; corners: Point[] }
+
 export function prepareConcaveArea(area: Outline): ConcaveArea {
   const field = new DistanceField(area);
-  return { field, reflex: reflexCorners(area), poles: outsidePoles(field) };
+  return { field, reflex: reflexGroups(area), poles: outsidePoles(field) };
 }
 
 /** A corner that turns back by less than this, as the sine of its angle, is straight. */
 const STRAIGHT_SINE = 1e-9;
+
+/** Few enough to look at each, enough that there are few groups. */
+const GROUP_CORNERS = 12;
+/** Corners farther apart than this share of the area's size are not neighbours. */
+const GROUP_SHARE = 0.05;
+
+function reflexGroups(area: Outline): ReflexGroup[] {
+  const { w, h } = outlineBox(area);
+  const nearMm = Math.max(w, h) * GROUP_SHARE;
+  const groups: Point[][] = [];
+  for (const corner of reflexCorners(area)) {
+    const group = groups.at(-1);
+    if (group && group.length < GROUP_CORNERS && Math.hypot(group[0].x - corner.x, group[0].y - corner.y) < nearMm) group.push(corner);
+    else groups.push([corner]);
+  }
+  return groups.map((corners) => {
+    const centre = boxCentre(ringBox(corners));
+    return { ...centre, radius: Math.max(...corners.map((c) => Math.hypot(c.x - centre.x, c.y - centre.y))), corners };
+  });
+}
 
 function reflexCorners(area: Outline): Point[] {
   return area.rings.flatMap((ring, i) => {

@@ -13,7 +13,7 @@
  */
 import type { Point } from '../geometry/types.ts';
 import { borderInArea, turnedInk } from './border-in-area.ts';
-import { addConstraint, emptyConstraints, largestBorder } from './border-programme.ts';
+import { addConstraint, emptyConstraints, largestBorder, type BorderConstraints } from './border-programme.ts';
 import { addHullBounds, addLocalBounds, type Surroundings } from './cell-bound.ts';
 import type { ConcaveArea } from './concave-area.ts';
 import { nearestOnRing, placeConstraints, placesWithBorder, REACH_MM, type Place } from './convex-fit.ts';
@@ -30,15 +30,17 @@ export interface SearchOptions {
 }
 export interface SearchResult extends Place { bound: number; squares: number }
 
+/** With rows that are filled anew for each small programme. */
+type Search = Surroundings & { rows: BorderConstraints };
+
 /** Places worse by less are as good: a fifth of the gap that is proven. */
 const AS_GOOD_MM = 0.002;
 /** Stops an endless search on rounding; the bound stays true then, only wider. */
 const MOST_SQUARES = 100_000;
 
 export function concaveFit(artwork: PreparedArtwork, turned: TurnedArtwork, die: PreparedDie, area: ConcaveArea, options: SearchOptions): SearchResult {
-  const { tree, field } = artwork.ink();
-  const ink = turnedInk(tree, field, turned.angleDeg, turned.box);
-  const s: Surroundings = { area, ink, hull: placeConstraints(die.halfPlanes, turned.hull) };
+  const ink = turnedInk(artwork, turned);
+  const s: Search = { area, ink, hull: placeConstraints(die.halfPlanes, turned.hull), rows: emptyConstraints(256) };
   const { target } = options;
   const top = largestBorder(s.hull, target.x, target.y, REACH_MM);
   if (top === null) throw new Error('The border programme without limits on the place always has an answer.');
@@ -55,10 +57,10 @@ export function concaveFit(artwork: PreparedArtwork, turned: TurnedArtwork, die:
 const CLIMB_START_MM = 1;
 const CLIMB_END_MM = 0.002;
 
-function climb(s: Surroundings, from: Place): Place {
+function climb(s: Search, from: Place): Place {
   let best = from;
   for (let r = CLIMB_START_MM; r > CLIMB_END_MM;) {
-    const rows = emptyConstraints(64);
+    const rows = cleared(s.rows);
     addLocalBounds(s, best.x, best.y, best.border, r, rows, true);
     addSquare(rows, best.x, best.y, r);
     const next = largestBorder(rows, best.x, best.y, r);
@@ -69,14 +71,19 @@ function climb(s: Surroundings, from: Place): Place {
   return best;
 }
 
-function addSquare(rows: ReturnType<typeof emptyConstraints>, x: number, y: number, half: number): void {
+function cleared(rows: BorderConstraints): BorderConstraints {
+  rows.count = 0;
+  return rows;
+}
+
+function addSquare(rows: BorderConstraints, x: number, y: number, half: number): void {
   addConstraint(rows, 1, 0, 0, x + half);
   addConstraint(rows, -1, 0, 0, half - x);
   addConstraint(rows, 0, 1, 0, y + half);
   addConstraint(rows, 0, -1, 0, half - y);
 }
 
-function searchSquares(s: Surroundings, start: Place, topBound: number, { gapMm, worthMm }: SearchOptions): { place: Place; bound: number; squares: number } {
+function searchSquares(s: Search, start: Place, topBound: number, { gapMm, worthMm }: SearchOptions): { place: Place; bound: number; squares: number } {
   let best = start;
   let squares = 0;
   // What was dropped may still be better by up to the gap.
@@ -91,7 +98,7 @@ function searchSquares(s: Surroundings, start: Place, topBound: number, { gapMm,
     let bound = Math.min(parentBound, border + r);
     if (border > best.border) best = { x, y, border };
     if (bound > enough()) {
-      const rows = emptyConstraints(64);
+      const rows = cleared(s.rows);
       addHullOrPairs(s, x, y, border, r, rows);
       addSquare(rows, x, y, half);
       const inside = largestBorder(rows, x, y, half);
@@ -121,14 +128,14 @@ function searchSquares(s: Surroundings, start: Place, topBound: number, { gapMm,
 const QUARTERS = [[-1, -1], [1, -1], [-1, 1], [1, 1]] as const;
 
 /** Far from the optimum, in large squares, only the hull is worth its rows. */
-function addHullOrPairs(s: Surroundings, x: number, y: number, border: number, r: number, rows: ReturnType<typeof emptyConstraints>): void {
-  if (r < border) { addLocalBounds(s, x, y, border, r, rows, false); return; }
+function addHullOrPairs(s: Search, x: number, y: number, border: number, r: number, rows: BorderConstraints): void {
+  if (r < border / 5) { addLocalBounds(s, x, y, border, r, rows, false); return; }
   addHullBounds(s.hull, x, y, border + 2 * r, rows);
   addConstraint(rows, 0, 0, 1, border + r);
 }
 
 /** Squares over the box of the places that the hull allows. */
-function firstSquares(s: Surroundings, border: number): { x: number; y: number; half: number }[] {
+function firstSquares(s: Search, border: number): { x: number; y: number; half: number }[] {
   const ring = placesWithBorder(s.hull, border, 0, 0, REACH_MM);
   if (ring.length === 0) return [];
   const box = ringBox(ring);
@@ -142,23 +149,25 @@ function firstSquares(s: Surroundings, border: number): { x: number; y: number; 
   return squares;
 }
 
-const WALK_START_MM = 4;
+const WALK_START_MM = 1;
 const WALK_END_MM = 0.01;
 
 /** Towards equal margins as far as the border stays as good: each step goes to the nearest place that the pairs nearby allow. */
-function centred(s: Surroundings, best: Place, target: Point): Place {
+function centred(s: Search, best: Place, target: Point): Place {
   const enough = best.border - AS_GOOD_MM;
   const atTarget = borderInArea(s.area, s.ink, target.x, target.y, enough);
   if (atTarget >= enough) return { ...target, border: atTarget };
   let here = best;
   for (let r = WALK_START_MM; r > WALK_END_MM;) {
-    const rows = emptyConstraints(64);
+    const rows = cleared(s.rows);
     addLocalBounds(s, here.x, here.y, here.border, r, rows, true);
     const next = nearestOnRing(placesWithBorder(rows, enough, here.x, here.y, r), target);
     const nearer = next !== null && Math.hypot(next.x - target.x, next.y - target.y) < Math.hypot(here.x - target.x, here.y - target.y) - WALK_END_MM / 4;
     const border = nearer ? borderInArea(s.area, s.ink, next.x, next.y, enough) : -Infinity;
-    if (next !== null && border >= enough) here = { ...next, border };
-    else r /= 2;
+    if (next !== null && border >= enough) {
+      here = { ...next, border };
+      r *= 2;
+    } else r /= 4;
   }
   return here;
 }

@@ -23,6 +23,8 @@ export interface InkTree {
   ay: Float64Array;
   bx: Float64Array;
   by: Float64Array;
+  /** Edges that start at the farthest ink each way: the likeliest to come near a label's edge, so looked at first. */
+  outermost: Int32Array;
 }
 
 /** Edges in a leaf: few enough to look at each, enough to keep the tree shallow. */
@@ -55,6 +57,7 @@ export function buildInkTree(rings: readonly Ring[]): InkTree {
   add(edges);
 
   return {
+    outermost: outermostEdges(ordered),
     nodes: node.length,
     x: Float64Array.from(node, (n) => n.x), y: Float64Array.from(node, (n) => n.y), radius: Float64Array.from(node, (n) => n.radius),
     after: Int32Array.from(node, (n) => n.after), from: Int32Array.from(node, (n) => n.from), to: Int32Array.from(node, (n) => n.to),
@@ -62,6 +65,19 @@ export function buildInkTree(rings: readonly Ring[]): InkTree {
     ax: Float64Array.from(ordered, (e) => e.ax), ay: Float64Array.from(ordered, (e) => e.ay),
     bx: Float64Array.from(ordered, (e) => e.bx), by: Float64Array.from(ordered, (e) => e.by),
   };
+}
+
+const DIRECTIONS = 16;
+
+function outermostEdges(edges: readonly Edge[]): Int32Array {
+  const found = new Set<number>();
+  for (let k = 0; k < DIRECTIONS; k++) {
+    const nx = Math.cos((k * 2 * Math.PI) / DIRECTIONS), ny = Math.sin((k * 2 * Math.PI) / DIRECTIONS);
+    let far = 0;
+    for (let e = 1; e < edges.length; e++) if (nx * edges[e].ax + ny * edges[e].ay > nx * edges[far].ax + ny * edges[far].ay) far = e;
+    found.add(far);
+  }
+  return Int32Array.from(found);
 }
 
 function extent(part: readonly Edge[]): { left: number; right: number; top: number; bottom: number } {

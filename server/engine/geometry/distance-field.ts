@@ -5,7 +5,7 @@
  * outside. Exact to rounding: the grid only remembers, for each cell, which edges can be the nearest to some point in it. An edge
  * can be if it is no farther from the cell's middle than the nearest one plus twice the cell's half diagonal (triangle inequality).
  * Cells are filled when first asked, coarse ones from all edges, fine ones from their coarse cell. Cost: a dozen edges a question
- * after that; far away (more than one outline's size from it) all edges. The answers do not depend on what was asked before.
+ * after that; far away (more than one outline's size from it) all edges. Answers do not depend on what was asked before.
  */
 import { outlineBox } from './ring.ts';
 import type { Box, Outline } from './types.ts';
@@ -25,6 +25,8 @@ export class DistanceField {
   readonly ay: Float64Array;
   readonly dx: Float64Array;
   readonly dy: Float64Array;
+  /** Of the point that was asked last. */
+  nearestEdge = 0;
   private readonly inverse: Float64Array;
   private readonly all: Int32Array;
   private readonly left: number;
@@ -32,7 +34,9 @@ export class DistanceField {
   private readonly coarseMm: number;
   private readonly fineMm: number;
   private readonly coarse: (Int32Array | undefined)[] = [];
-  private readonly fine: (Cell | undefined)[] = [];
+  /** For each fine cell, its place in `cells` plus 1; 0 while it has not been asked for. */
+  private readonly fine = new Int32Array((COARSE * FINE) ** 2);
+  private readonly cells: Cell[] = [];
   private readonly rows: (Int32Array | undefined)[] = [];
 
   constructor(outline: Outline) {
@@ -71,7 +75,7 @@ export class DistanceField {
     let least = Infinity;
     for (let k = 0; k < edges.length; k++) {
       const distSq = this.distSq(edges[k], x, y);
-      if (distSq < least) least = distSq;
+      if (distSq < least) { least = distSq; this.nearestEdge = edges[k]; }
     }
     const dist = Math.sqrt(least);
     const inside = cell === null ? false : cell.side !== 0 ? cell.side > 0 : this.contains(x, y);
@@ -120,7 +124,8 @@ export class DistanceField {
     const i = Math.floor((x - this.left) / this.fineMm), j = Math.floor((y - this.top) / this.fineMm);
     if (!(i >= 0 && j >= 0 && i < COARSE * FINE && j < COARSE * FINE)) return null;
     const at = j * COARSE * FINE + i;
-    return (this.fine[at] ??= this.fillFine(i, j));
+    if (this.fine[at] === 0) this.fine[at] = this.cells.push(this.fillFine(i, j));
+    return this.cells[this.fine[at] - 1];
   }
 
   private fillFine(i: number, j: number): Cell {
