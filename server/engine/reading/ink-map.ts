@@ -5,11 +5,12 @@
  * unevenly cancels out and coloured ink counts like black. A pixel half covered by ink has half the value, which is what places
  * an outline between two pixels' middles.
  *
- * Input: pixels and paper; not mutated. Output: the map, in the pixels' own orientation, and how strong the paper's grain is in it.
+ * Input: pixels, paper and the region that is read; not mutated. Output: the map, 0 outside the region, in the pixels' own orientation, and how strong the paper's grain is in it.
  * No ink at all is a typed result. Cost: one pass over the pixels.
  */
 import type { Pixels } from './decode.ts';
 import type { PaperGrid } from './paper.ts';
+import { regionPixels, type Region } from './region.ts';
 
 export interface InkMap {
   width: number;
@@ -28,14 +29,14 @@ const FAINTEST_INK = 0.09;
 const SAMPLES = 400_000;
 const BINS = 4096, BINS_PER_UNIT = 256;
 
-export function mapInk(pixels: Pixels, paper: PaperGrid): InkMap | null {
+export function mapInk(pixels: Pixels, paper: PaperGrid, region: Region): InkMap | null {
   const row = paperRow(pixels, paper);
-  const step = Math.max(1, Math.floor(Math.sqrt((pixels.width * pixels.height) / SAMPLES)));
+  const step = Math.max(1, Math.floor(Math.sqrt(regionPixels(region) / SAMPLES)));
   const histogram = new Float64Array(BINS);
   let counted = 0;
   for (let y = step >> 1; y < pixels.height; y += step) {
     row.load(y);
-    for (let x = step >> 1; x < pixels.width; x += step, counted++) histogram[Math.min(BINS - 1, Math.floor(row.difference(x, y) * BINS_PER_UNIT))]++;
+    for (let x = region.from[y] + (step >> 1); x < region.to[y]; x += step, counted++) histogram[Math.min(BINS - 1, Math.floor(row.difference(x, y) * BINS_PER_UNIT))]++;
   }
   const grain = (percentile(histogram, counted * 0.5, 0) + 1) / BINS_PER_UNIT;
   const faintest = Math.max(FAINTEST_INK, 6 * grain);
@@ -49,7 +50,7 @@ export function mapInk(pixels: Pixels, paper: PaperGrid): InkMap | null {
   const scale = INK_LEVEL / level;
   for (let y = 0; y < pixels.height; y++) {
     row.load(y);
-    row.write(y, scale, values);
+    row.write(y, region.from[y], region.to[y], scale, values);
   }
   return { width: pixels.width, height: pixels.height, values, grain: 1.8 * grain * scale };
 }
@@ -84,8 +85,8 @@ function paperRow(pixels: Pixels, paper: PaperGrid) {
     const r = 1 - rgba[at] * inverse[3 * x], g = 1 - rgba[at + 1] * inverse[3 * x + 1], b = 1 - rgba[at + 2] * inverse[3 * x + 2];
     return Math.sqrt(wr * r * r + wg * g * g + wb * b * b);
   }
-  function write(y: number, scale: number, values: Uint8Array): void {
-    for (let x = 0, at = 4 * y * width, i = 0, to = y * width; x < width; x++, at += 4, i += 3, to++) {
+  function write(y: number, first: number, end: number, scale: number, values: Uint8Array): void {
+    for (let x = first, at = 4 * (y * width + x), i = 3 * x, to = y * width + x; x < end; x++, at += 4, i += 3, to++) {
       const r = 1 - rgba[at] * inverse[i], g = 1 - rgba[at + 1] * inverse[i + 1], b = 1 - rgba[at + 2] * inverse[i + 2];
       const value = Math.sqrt(wr * r * r + wg * g * g + wb * b * b) * scale;
       values[to] = value >= 255 ? 255 : value + 0.5;

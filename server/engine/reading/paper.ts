@@ -1,13 +1,14 @@
 /**
  * What the bare paper looks like at every place of a picture, under uneven light.
  *
- * Input: RGBA pixels; not mutated. Output: a coarse grid of paper colours, to be interpolated between the tiles' middles, and
+ * Input: RGBA pixels and the region that is read; not mutated. Output: a coarse grid of paper colours, to be interpolated between the tiles' middles, and
  * whether ink is darker than paper. Cost: a fixed number of samples per tile, a few passes over the grid.
  *
  * The paper is what most of a tile shows on its bright side (on its dark side for white ink on dark card). A tile that is all ink
  * stands out from the tiles round it and takes its colour from them. A picture with nothing but one colour is all paper.
  */
 import type { Pixels } from './decode.ts';
+import type { Region } from './region.ts';
 
 export interface PaperGrid {
   tilePx: number;
@@ -39,15 +40,16 @@ export function luminance(r: number, g: number, b: number): number {
   return 0.299 * r + 0.587 * g + 0.114 * b;
 }
 
-export function estimatePaper(pixels: Pixels): PaperGrid {
+export function estimatePaper(pixels: Pixels, region: Region): PaperGrid {
   const tilePx = Math.max(MIN_TILE_PX, Math.round(Math.max(pixels.width, pixels.height) / TILES_ALONG));
   const columns = Math.ceil(pixels.width / tilePx), rows = Math.ceil(pixels.height / tilePx);
   const samples: Float32Array[] = [];
   let darkTail = 0, lightTail = 0;
   for (let row = 0; row < rows; row++) {
     for (let column = 0; column < columns; column++) {
-      const sorted = sampleTile(pixels, column * tilePx, row * tilePx, tilePx);
+      const sorted = sampleTile(pixels, region, column * tilePx, row * tilePx, tilePx);
       samples.push(sorted);
+      if (sorted.length === 0) continue;
       const n = sorted.length / 4, at = (share: number) => sorted[4 * Math.min(n - 1, Math.floor(share * n))];
       darkTail += at(0.5) - at(0.02);
       lightTail += at(0.98) - at(0.5);
@@ -55,18 +57,19 @@ export function estimatePaper(pixels: Pixels): PaperGrid {
   }
   const inkIsDarker = darkTail >= lightTail;
   const raw = new Float32Array(3 * columns * rows);
-  samples.forEach((sorted, tile) => meanColour(sorted, inkIsDarker, raw, 3 * tile));
+  samples.forEach((sorted, tile) => { if (sorted.length > 0) meanColour(sorted, inkIsDarker, raw, 3 * tile); });
   return { tilePx, columns, rows, colours: levelOutInk(raw, columns, rows, inkIsDarker), inkIsDarker };
 }
 
-/** Samples as luminance, red, green, blue, in ascending order of luminance. */
-function sampleTile(pixels: Pixels, x0: number, y0: number, tilePx: number): Float32Array {
+/** Samples as luminance, red, green, blue, in ascending order of luminance; none for a tile outside the region. */
+function sampleTile(pixels: Pixels, region: Region, x0: number, y0: number, tilePx: number): Float32Array {
   const x1 = Math.min(pixels.width, x0 + tilePx), y1 = Math.min(pixels.height, y0 + tilePx);
   const step = Math.max(1, Math.floor(tilePx / SAMPLES_ALONG));
   const found: { l: number; at: number }[] = [];
-  for (let y = y0 + ((step - 1) >> 1); y < y1 || found.length === 0; y += step) {
-    for (let x = x0 + ((step - 1) >> 1); x < x1 || found.length === 0; x += step) {
-      const at = 4 * (Math.min(y, y1 - 1) * pixels.width + Math.min(x, x1 - 1));
+  for (let y = Math.min(y1 - 1, y0 + ((step - 1) >> 1)); y < y1; y += step) {
+    const last = Math.min(x1, region.to[y]);
+    for (let x = Math.max(Math.min(x1 - 1, x0 + ((step - 1) >> 1)), region.from[y]); x < last; x += step) {
+      const at = 4 * (y * pixels.width + x);
       found.push({ l: luminance(pixels.rgba[at], pixels.rgba[at + 1], pixels.rgba[at + 2]), at });
     }
   }
@@ -96,12 +99,13 @@ function levelOutInk(raw: Float32Array, columns: number, rows: number, inkIsDark
     for (let column = 0; column < columns; column++) {
       near.length = 0;
       for (let r = Math.max(0, row - NEIGHBOURHOOD); r <= Math.min(rows - 1, row + NEIGHBOURHOOD); r += 2) {
-        for (let c = Math.max(0, column - NEIGHBOURHOOD); c <= Math.min(columns - 1, column + NEIGHBOURHOOD); c += 2) near.push(level[r * columns + c]);
+        for (let c = Math.max(0, column - NEIGHBOURHOOD); c <= Math.min(columns - 1, column + NEIGHBOURHOOD); c += 2) if (level[r * columns + c] > 0) near.push(level[r * columns + c]);
       }
       near.sort((a, b) => (inkIsDarker ? a - b : b - a));
       const expected = near[Math.min(near.length - 1, Math.floor(NEIGHBOURHOOD_RANK * near.length))];
       const off = inkIsDarker ? expected - level[row * columns + column] : level[row * columns + column] - expected;
-      weight[row * columns + column] = off > TILE_IS_INK * Math.max(expected, 40) ? 1e-6 : 1;
+      const own = level[row * columns + column];
+      weight[row * columns + column] = own === 0 ? 0 : off > TILE_IS_INK * Math.max(expected, 40) ? 1e-6 : 1;
     }
   }
   return smooth(raw, weight, columns, rows);
@@ -121,7 +125,8 @@ function smooth(raw: Float32Array, weight: Float32Array, columns: number, rows: 
           }
         }
         if (sum < 1e-3 && reach < Math.max(columns, rows)) continue;
-        smoothed.set([red / sum, green / sum, blue / sum], 3 * (row * columns + column));
+        const known = sum > 0 ? 1 / sum : 0;
+        for (const [c, total] of [red, green, blue].entries()) smoothed[3 * (row * columns + column) + c] = Math.max(MIN_LEVEL, total * known);
         break;
       }
     }

@@ -1,45 +1,45 @@
 /**
- * A picture file → its sentiments in mm: decoding, ink from paper, connected pieces with outlines, scale, grouping.
+ * A picture file → its sentiments in mm: decoding, scale, ink from paper, connected pieces with outlines, grouping.
  *
  * Input: the file's bytes and what the person said; not mutated. Output: a Reading; see types.ts for the exact meaning of its places.
  * Rejects with ReadingError. Runs on the calling thread. Memory: 4 bytes a pixel while decoding, then 2.
  */
-import { outlineBox } from '../geometry/ring.ts';
 import type { Control } from '../control.ts';
-import { findComponents } from './components.ts';
-import { traceContours } from './contour.ts';
-import { decodePicture } from './decode.ts';
+import type { Point } from '../geometry/types.ts';
+import { decodePicture, type Pixels } from './decode.ts';
+import { findParts } from './find-parts.ts';
 import { NO_CORRECTIONS, regroup, withScale } from './grouping.ts';
+import { localScale, multiply, type Homography } from './homography.ts';
 import { mapInk, type InkMap } from './ink-map.ts';
-import { maskInk } from './ink-mask.ts';
-import { turnUpright, uprightSize, type Turning } from './orientation.ts';
-import { estimatePaper } from './paper.ts';
-import { probePicture, type PictureHeader } from './probe.ts';
+import { findPhotoPage } from './markers.ts';
+import { storedPlace, turnUpright, uprightSize, type Turning } from './orientation.ts';
+import { estimatePaper, luminance } from './paper.ts';
+import { PHOTO_PAGE_ROOM } from './photo-page-layout.ts';
+import { probePicture } from './probe.ts';
 import { noInk } from './reading-error.ts';
-import { fileScale, givenScale } from './scale.ts';
-import { simplifyRing } from './simplify.ts';
-import type { Reading, ReadOptions, ReadPart } from './types.ts';
+import { insetPolygon, regionWithin } from './region.ts';
+import { fileScale, givenScale, type Scale } from './scale.ts';
+import type { Reading, ReadOptions } from './types.ts';
 
-/** Parts' outlines may lose this much, mm, or this share of a pixel while no scale is known. */
-const PART_TOLERANCE_MM = 0.02;
-const PART_TOLERANCE_PX = { least: 0.1, most: 0.4, unknown: 0.2 };
-/** Dust is isolated and smaller than this. */
-const DUST_MM = 0.25;
-/** Where no scale is known: dust of a scan at 300 dpi. */
-const DUST_PX = 3;
+type Progress = (done: number, stage: string) => void;
+/** What is read, upright picture px; null for everything. */
+interface Surface { scale: Scale | null; polygon: Point[] | null }
+
+/** Within this of a sheet's edge its own shadow shows; a stamp's ink does not reach so far out. */
+const SHEET_EDGE_MM = 0.5;
 
 export async function readStampSheet(file: Uint8Array, options: ReadOptions, control?: Control): Promise<Reading> {
-  const progress = (done: number, stage: string) => control?.onProgress?.(done, stage);
+  const progress: Progress = (done, stage) => control?.onProgress?.(done, stage);
   const header = probePicture(file);
   const given = givenScale(options);
   progress(0, 'decoding');
-  const { map, turning } = await inkOf(file, header, options.mirrored ?? false, progress);
-  const upright = uprightSize(turning);
+  const { map, surface, turning } = await separateInk(file, header, given, options, progress);
 
   progress(0.6, 'finding ink');
-  const scale = given ?? fileScale(header.dpi);
-  const mmPerPx = scale ? scale.pxToMm[0] : null;
-  const parts = findParts({ ...map, ...upright, values: turnUpright(map.values, turning) }, mmPerPx);
+  const upright = uprightSize(turning);
+  const { scale, polygon } = surface;
+  const mmPerPx = scale && localScale(scale.pxToMm, { x: upright.width / 2, y: upright.height / 2 });
+  const parts = findParts({ ...map, ...upright, values: turnUpright(map.values, turning) }, polygon, mmPerPx);
   if (parts.length === 0) throw noInk();
 
   progress(0.85, 'grouping');
@@ -56,28 +56,41 @@ export async function readStampSheet(file: Uint8Array, options: ReadOptions, con
 }
 
 /** The pixels are let go of as soon as the map is made. */
-async function inkOf(file: Uint8Array, header: PictureHeader, mirrored: boolean, progress: (done: number, stage: string) => void): Promise<{ map: InkMap; turning: Turning }> {
+async function separateInk(file: Uint8Array, header: ReturnType<typeof probePicture>, given: Scale | null, options: ReadOptions, progress: Progress): Promise<{ map: InkMap; surface: Surface; turning: Turning }> {
   const pixels = await decodePicture(file, header);
-  progress(0.35, 'levelling light');
-  const map = mapInk(pixels, estimatePaper(pixels));
+  const turning: Turning = { width: pixels.width, height: pixels.height, orientation: header.orientation, mirrored: options.mirrored ?? false };
+  progress(0.3, 'looking for the sheet');
+  const surface = await findSurface(pixels, turning, given, fileScale(header.dpi), options);
+  progress(0.4, 'levelling light');
+  const region = regionWithin(pixels.width, pixels.height, surface.polygon && surface.polygon.map((p) => storedPlace(turning, p)));
+  const map = mapInk(pixels, estimatePaper(pixels, region), region);
   if (!map) throw noInk();
-  return { map, turning: { width: pixels.width, height: pixels.height, orientation: header.orientation, mirrored } };
+  return { map, surface, turning };
 }
 
-function findParts(map: InkMap, mmPerPx: number | null): ReadPart[] {
-  const mask = maskInk(map);
-  const tolerance = mmPerPx === null ? PART_TOLERANCE_PX.unknown : Math.min(PART_TOLERANCE_PX.most, Math.max(PART_TOLERANCE_PX.least, PART_TOLERANCE_MM / mmPerPx));
-  const dust = mmPerPx === null ? DUST_PX : DUST_MM / mmPerPx;
-  const pieces = findComponents(mask.ink, mask.width, mask.height).filter((c) => Math.max(c.right - c.left, c.bottom - c.top) + 1 >= dust);
-  return pieces.map((piece, id) => {
-    const traced = traceContours(mask, piece);
-    const boxPx = outlineBox(traced);
-    const rings = traced.rings.map((ring) => simplifyRing(ring, tolerance).map((p) => ({ x: hundredth(p.x), y: hundredth(p.y) })));
-    return { id, boxPx, areaPx2: piece.pixels, areaMm2: null, outlinePx: { rings: rings.filter((ring, i) => i === 0 || ring.length >= 3) }, thinnestStrokeMm: null };
-  });
+async function findSurface(pixels: Pixels, turning: Turning, given: Scale | null, fromFile: Scale | null, options: ReadOptions): Promise<Surface> {
+  if (given?.source === 'sheet' && options.sheet) {
+    return { scale: given, polygon: insideEdge(options.sheet.cornersPx, given.pxToMm) };
+  }
+  if (given) return { scale: given, polygon: null };
+  const upright = { ...turning, mirrored: false }, size = uprightSize(upright);
+  const page = await findPhotoPage({ ...size, values: turnUpright(brightness(pixels), upright) }, options.photoPageScale ?? { x: 1, y: 1 });
+  if (!page) return { scale: fromFile, polygon: null };
+  if (!turning.mirrored) return { scale: { pxToMm: page.pxToMm, source: 'photo-page' }, polygon: page.roomPx };
+  // Seen in a mirror the markers are none: they are found before flipping, and picture and sheet are then flipped alike.
+  const flip = (width: number): Homography => [-1, 0, width, 0, 1, 0, 0, 0, 1];
+  const roomWidth = PHOTO_PAGE_ROOM.w * (options.photoPageScale?.x ?? 1);
+  const pxToMm = multiply(flip(roomWidth), multiply(page.pxToMm, flip(size.width)));
+  return { scale: { pxToMm, source: 'photo-page' }, polygon: page.roomPx.map((p) => ({ x: size.width - p.x, y: p.y })).reverse() };
 }
 
-/** Outlines are stored and sent; digits beyond a hundredth of a pixel say nothing. */
-function hundredth(v: number): number {
-  return Math.round(v * 100) / 100;
+function insideEdge(corners: readonly Point[], pxToMm: Homography): Point[] {
+  const middle = { x: corners.reduce((s, p) => s + p.x, 0) / 4, y: corners.reduce((s, p) => s + p.y, 0) / 4 };
+  return insetPolygon(corners, SHEET_EDGE_MM / localScale(pxToMm, middle));
+}
+
+function brightness(pixels: Pixels): Uint8Array {
+  const values = new Uint8Array(pixels.width * pixels.height), { rgba } = pixels;
+  for (let i = 0, at = 0; i < values.length; i++, at += 4) values[i] = luminance(rgba[at], rgba[at + 1], rgba[at + 2]);
+  return values;
 }

@@ -1,0 +1,69 @@
+/**
+ * Connected pieces of ink with their outlines, dust and the paper's edges left out.
+ *
+ * Input: an ink map, upright; the polygon that is read, or null; mm per pixel at the picture's middle, or null. Not mutated. Output: parts in picture
+ * px, without measures in mm. Cost: one pass over the map and the length of all outlines.
+ *
+ * Dust is smaller than DUST_MM and isolated: nothing larger lies nearby. The dot of an i, a full stop, a dot in a row of dots are near others.
+ * A piece that touches the edge of what is read, where that edge is a sheet's, is the sheet's edge or what lies beyond.
+ */
+import { outlineBox } from '../geometry/ring.ts';
+import type { Box, Point } from '../geometry/types.ts';
+import { findComponents, type Component } from './components.ts';
+import { traceContours } from './contour.ts';
+import { boxDistance } from './gaps.ts';
+import type { InkMap } from './ink-map.ts';
+import { maskInk } from './ink-mask.ts';
+import { segmentDistanceSq, simplifyRing } from './simplify.ts';
+import type { ReadPart } from './types.ts';
+
+/** Parts' outlines may lose this much, mm, or this share of a pixel while no scale is known. */
+const PART_TOLERANCE_MM = 0.02;
+const PART_TOLERANCE_PX = { least: 0.1, most: 0.4, unknown: 0.2 };
+const DUST_MM = 0.25;
+/** Where no scale is known: as in a scan at 300 dpi. */
+const UNKNOWN_MM_PER_PX = 25.4 / 300;
+/** A dot belongs to what is within this many of its own sizes. */
+const DOT_REACH = 4;
+/** Smaller than this is dust even beside letters: no ink prints so fine a dot. */
+const SPECK_MM = 0.12;
+const EDGE_PX = 2;
+
+export function findParts(map: InkMap, polygon: readonly Point[] | null, mmPerPx: number | null): ReadPart[] {
+  const mask = maskInk(map);
+  const tolerance = mmPerPx === null ? PART_TOLERANCE_PX.unknown : Math.min(PART_TOLERANCE_PX.most, Math.max(PART_TOLERANCE_PX.least, PART_TOLERANCE_MM / mmPerPx));
+  const scale = mmPerPx ?? UNKNOWN_MM_PER_PX;
+  const pieces = withoutDust(findComponents(mask.ink, mask.width, mask.height), scale);
+  const parts: ReadPart[] = [];
+  for (const piece of pieces) {
+    const traced = traceContours(mask, piece);
+    if (polygon && touchesEdge(traced.rings[0], polygon)) continue;
+    const rings = traced.rings.map((ring) => simplifyRing(ring, tolerance).map((p) => ({ x: hundredth(p.x), y: hundredth(p.y) })));
+    const outlinePx = { rings: rings.filter((ring, i) => i === 0 || ring.length >= 3) };
+    parts.push({ id: parts.length, boxPx: outlineBox(outlinePx), areaPx2: piece.pixels, areaMm2: null, outlinePx, thinnestStrokeMm: null });
+  }
+  return parts;
+}
+
+/** Outlines are stored and sent; digits beyond a hundredth of a pixel say nothing. */
+function hundredth(v: number): number {
+  return Math.round(v * 100) / 100;
+}
+
+function withoutDust(pieces: readonly Component[], mmPerPx: number): Component[] {
+  const boxOf = (c: Component): Box => ({ x: c.left, y: c.top, w: c.right - c.left + 1, h: c.bottom - c.top + 1 });
+  const size = (c: Component) => Math.max(c.right - c.left, c.bottom - c.top) + 1;
+  const least = SPECK_MM / mmPerPx, dust = DUST_MM / mmPerPx;
+  const large = pieces.filter((c) => size(c) >= dust).map(boxOf).sort((a, b) => a.x - b.x);
+  return pieces.filter((piece) => {
+    if (size(piece) >= dust) return true;
+    // A pixel alone is a whole dot only where pixels are coarse.
+    if (size(piece) < least || piece.pixels < 2) return false;
+    const box = boxOf(piece), reach = DOT_REACH * size(piece);
+    return large.some((b) => b.x - reach <= box.x + box.w && boxDistance(b, box) <= reach);
+  });
+}
+
+function touchesEdge(ring: readonly Point[], polygon: readonly Point[]): boolean {
+  return ring.some((p) => polygon.some((a, i) => segmentDistanceSq(p, a, polygon[(i + 1) % polygon.length]) < EDGE_PX * EDGE_PX));
+}
