@@ -45,13 +45,23 @@ function receive(req: Request, res: Response, parse: ReturnType<multer.Multer['a
   return new Promise((resolve, reject) => {
     const stalled = () => reject(refuse(req, res, new AppError(408, 'stalled', 'The file stopped arriving. Check the connection and send it again.'), 0));
     let timer = setTimeout(stalled, STALLED_MS);
-    const heard = () => {
+    let received = 0;
+    const heard = (chunk: Buffer) => {
       clearTimeout(timer);
       timer = setTimeout(stalled, STALLED_MS);
+      received += chunk.length;
+      // The parser would read a body that does not say its length to its end before it complained.
+      if (received > maxBytes * maxFiles + ROOM_BYTES) {
+        settle();
+        reject(refuse(req, res, tooLarge(maxBytes, maxFiles)));
+      }
     };
-    parse(req, res, (error: unknown) => {
+    const settle = () => {
       clearTimeout(timer);
       req.off('data', heard);
+    };
+    parse(req, res, (error: unknown) => {
+      settle();
       if (!error) return resolve();
       reject(error instanceof multer.MulterError ? refuse(req, res, translate(error, maxBytes, maxFiles)) : refuse(req, res, new AppError(400, 'broken-upload', 'The file did not arrive whole. Send it again.', { cause: error })));
     });
