@@ -2,8 +2,9 @@
 import type { Deps, Feature } from '../feature.ts';
 import { createJobRoutes } from '../jobs/jobs.routes.ts';
 import { createAccount } from './account/account.routes.ts';
+import { createStampSets } from './stamp-sets/stamp-sets.routes.ts';
 import { createStudio } from './studio/studio.routes.ts';
 
 export function createFeatures(deps: Deps): Feature[] {
-  return [createAccount(deps), createStudio(deps), createJobRoutes(deps)];
+  return [createAccount(deps), createStudio(deps), createStampSets(deps), createJobRoutes(deps)];
 }
