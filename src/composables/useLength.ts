@@ -13,8 +13,11 @@ export function useLength() {
     show: (mm: number, options?: FormatOptions): string => formatLength(mm, unit.value, options),
     /** `108 × 64 mm`. */
     showSize: (widthMm: number, heightMm: number, options?: FormatOptions): string => formatSize(widthMm, heightMm, unit.value, options),
-    /** As put into a field: parsing it gives the same length again. */
-    editable: (mm: number): string => editableLength(mm, unit.value),
+    /** As put into a LengthField, which keeps the stored length until something is typed: fractions where it is one, else three decimals. */
+    field: (mm: number): string => {
+      const exact = editableLength(mm, unit.value);
+      return unit.value === 'in' && exact.includes('.') ? formatLength(mm, 'in', { inches: 'decimal', decimals: 3 }) : exact;
+    },
     parse: (text: string, options?: ParseOptions): ParsedLength => parseLength(text, unit.value, options),
   };
 }

@@ -1,0 +1,5 @@
+export const STUDIO_PAGES = [
+  { route: 'members', label: 'People' },
+  { route: 'settings', label: 'Settings' },
+  { route: 'activity', label: 'Activity' },
+] as const;
