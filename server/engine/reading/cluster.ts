@@ -11,37 +11,46 @@ import type { Box, Outline } from '../geometry/types.ts';
 
 export interface Cluster {
   box: Box;
-  /** Letter height, weighed by width: the parts' core heights. */
+  /** Letter height: the median of the parts' core heights, weighed by their ink. */
   core: number;
   /** Typical stroke: twice the ink's area over its outline's length. */
   stroke: number;
   /** Largest gap within. */
   inner: number;
   parts: number;
-  /** Sums that make merging two clusters cheap: of widths, of width × log core, of lengths, of areas. */
-  sums: { width: number; logCore: number; length: number; area: number };
+  /** Of all parts: length of outlines and area, to tell the stroke of several together. */
+  length: number;
+  area: number;
+  /** Each part's core height and ink, in ascending order of height. */
+  cores: { core: number; area: number }[];
 }
 
 const CORE_LINES = 24;
+/** Of a part's lines this share is less busy than the line that stands for its core: not the busiest, which may be a swash. */
+const CORE_RANK = 0.75;
 
 export function clusterOf(part: Outline): Cluster {
   const box = outlineBox(part);
   const area = Math.max(outlineArea(part), 1e-9);
   let length = 0;
   for (const ring of part.rings) ring.forEach((p, i) => { const q = ring[(i + 1) % ring.length]; length += Math.hypot(q.x - p.x, q.y - p.y); });
-  const core = Math.max(coreHeight(part, box), 1e-6), width = Math.max(box.w, 1e-6);
-  return { box, core, stroke: (2 * area) / length, inner: 0, parts: 1, sums: { width, logCore: width * Math.log(core), length, area } };
+  const core = Math.max(coreHeight(part, box), 1e-6);
+  return { box, core, stroke: (2 * area) / length, inner: 0, parts: 1, length, area, cores: [{ core, area }] };
 }
 
 export function mergeClusters(a: Cluster, b: Cluster, gap: number): Cluster {
-  const sums = {
-    width: a.sums.width + b.sums.width, logCore: a.sums.logCore + b.sums.logCore,
-    length: a.sums.length + b.sums.length, area: a.sums.area + b.sums.area,
-  };
-  return {
-    box: unionBox(a.box, b.box), core: Math.exp(sums.logCore / sums.width), stroke: (2 * sums.area) / sums.length,
-    inner: Math.max(a.inner, b.inner, gap), parts: a.parts + b.parts, sums,
-  };
+  const cores = [...a.cores, ...b.cores].sort((p, q) => p.core - q.core);
+  const length = a.length + b.length, area = a.area + b.area;
+  return { box: unionBox(a.box, b.box), core: medianCore(cores, area), stroke: (2 * area) / length, inner: Math.max(a.inner, b.inner, gap), parts: a.parts + b.parts, length, area, cores };
+}
+
+function medianCore(cores: Cluster['cores'], area: number): number {
+  let sum = 0;
+  for (const { core, area: own } of cores) {
+    sum += own;
+    if (sum >= area / 2) return core;
+  }
+  return cores[cores.length - 1].core;
 }
 
 export function unionBox(a: Box, b: Box): Box {
@@ -49,7 +58,7 @@ export function unionBox(a: Box, b: Box): Box {
   return { x, y, w: Math.max(a.x + a.w, b.x + b.w) - x, h: Math.max(a.y + a.h, b.y + b.h) - y };
 }
 
-/** Height of the band whose lines cross at least half as many strokes as the busiest line does. */
+/** Height of the band whose lines cross at least half as many strokes as a busy line does. */
 function coreHeight(part: Outline, box: Box): number {
   const crossings = new Float64Array(CORE_LINES), step = box.h / CORE_LINES;
   for (const ring of part.rings) {
@@ -59,8 +68,8 @@ function coreHeight(part: Outline, box: Box): number {
       for (let line = Math.max(0, from); line < Math.min(CORE_LINES, to); line++) crossings[line]++;
     });
   }
-  const busiest = Math.max(...crossings);
+  const busy = [...crossings].sort((p, q) => p - q)[Math.floor(CORE_RANK * CORE_LINES)];
   let lines = 0;
-  for (const c of crossings) if (c >= 0.5 * busiest) lines++;
+  for (const c of crossings) if (c >= 0.5 * busy) lines++;
   return lines * step;
 }

@@ -33,10 +33,10 @@ export function regroup(reading: Reading, groupingGap: number | 'auto', correcti
   const links = spanningLinks(outlines);
   const aside = new Set(corrections.setAside.map((p) => nearestPart(parts, p)));
   const kept = parts.map((_, i) => i).filter((i) => !aside.has(i) && !isOutside(reading, parts[i]));
-  const keptLinks = kept.length === parts.length ? links : spanningLinks(kept.map((i) => outlines[i])).map((l) => ({ ...l, a: kept[l.a], b: kept[l.b] }));
-
-  const gap = groupingGap === 'auto' ? autoGap(keptLinks, outlines.map(outlineBox)) : groupingGap;
-  const groups = cutTree(parts, kept, keptLinks, gap, corrections, sheet);
+  const keptOutlines = kept.map((i) => outlines[i]);
+  const keptLinks = kept.length === parts.length ? links : spanningLinks(keptOutlines);
+  const gap = groupingGap === 'auto' ? autoGap(keptLinks, keptOutlines) : groupingGap;
+  const groups = cutTree(parts, kept, keptLinks.map((l) => ({ ...l, a: kept[l.a], b: kept[l.b] })), gap, corrections, sheet);
   const scale = reading.mmPerPx;
   return {
     ...reading,

@@ -7,12 +7,12 @@
  * size, each from many crossings half way between black and white, and corners are where sides meet. Cost: one detection in at most DETECT_SIDE_PX.
  */
 import type { Point } from '../geometry/types.ts';
-import { applyHomography, homographyFrom, invertHomography, type Homography } from './homography.ts';
+import { applyHomography, homographyFrom, invertHomography, multiply, type Homography } from './homography.ts';
 import { loadOpenCv, type Cv } from './opencv.ts';
 import { markerCorners, PHOTO_PAGE_DICTIONARY, PHOTO_PAGE_MARKERS, PHOTO_PAGE_ROOM } from './photo-page-layout.ts';
 
 export interface Brightness { width: number; height: number; values: Uint8Array }
-export interface PhotoPage { pxToMm: Homography; roomPx: Point[]; markers: number }
+export interface PhotoPage { pxToMm: Homography; roomMm: { w: number; h: number }; roomPx: Point[]; markers: number }
 
 /** A marker of a page that fills half the picture still has 40 pixels along a side. */
 const DETECT_SIDE_PX = 1600;
@@ -35,15 +35,28 @@ export async function findPhotoPage(picture: Brightness, printedScale: { x: numb
     if (!pxToMm) return null;
     const off = places.map((p) => Math.max(...p.px.map((corner, i) => distance(applyHomography(pxToMm, corner), p.mm[i]))));
     const worst = off.indexOf(Math.max(...off));
-    if (off[worst] <= STRAY_MM) return { pxToMm, roomPx: roomCorners(pxToMm, printedScale), markers: places.length };
+    if (off[worst] <= STRAY_MM) return asSeen(pxToMm, picture, printedScale, places.length);
     places = places.filter((_, i) => i !== worst);
   }
   return null;
 }
 
-function roomCorners(pxToMm: Homography, scale: { x: number; y: number }): Point[] {
-  const back = invertHomography(pxToMm), w = PHOTO_PAGE_ROOM.w * scale.x, h = PHOTO_PAGE_ROOM.h * scale.y;
-  return [{ x: 0, y: 0 }, { x: w, y: 0 }, { x: w, y: h }, { x: 0, y: h }].map((p) => applyHomography(back, p));
+/**
+ * The page may have been photographed from any side, and the sheet be laid on it either way; the picture is taken as people want to read it. So
+ * the page's axes are turned by quarters until they run as the picture's do, with the origin at the room's top left as then seen.
+ */
+function asSeen(pageMm: Homography, picture: Brightness, scale: { x: number; y: number }, markers: number): PhotoPage {
+  let pxToMm = pageMm, w = PHOTO_PAGE_ROOM.w * scale.x, h = PHOTO_PAGE_ROOM.h * scale.y;
+  const middle = { x: picture.width / 2, y: picture.height / 2 };
+  for (let quarter = 0; quarter < 4; quarter++) {
+    const from = applyHomography(pxToMm, middle), to = applyHomography(pxToMm, { x: middle.x + 1, y: middle.y });
+    if (to.x - from.x >= Math.abs(to.y - from.y)) break;
+    pxToMm = multiply([0, -1, h, 1, 0, 0, 0, 0, 1], pxToMm);
+    [w, h] = [h, w];
+  }
+  const back = invertHomography(pxToMm);
+  const corners = [{ x: 0, y: 0 }, { x: w, y: 0 }, { x: w, y: h }, { x: 0, y: h }];
+  return { pxToMm, roomMm: { w, h }, roomPx: corners.map((p) => applyHomography(back, p)), markers };
 }
 
 function detect(cv: Cv, picture: Brightness): Map<number, Point[]> {

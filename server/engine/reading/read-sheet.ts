@@ -14,7 +14,6 @@ import { mapInk, type InkMap } from './ink-map.ts';
 import { findPhotoPage } from './markers.ts';
 import { storedPlace, turnUpright, uprightSize, type Turning } from './orientation.ts';
 import { estimatePaper, luminance } from './paper.ts';
-import { PHOTO_PAGE_ROOM } from './photo-page-layout.ts';
 import { probePicture } from './probe.ts';
 import { noInk } from './reading-error.ts';
 import { insetPolygon, regionWithin } from './region.ts';
@@ -79,8 +78,7 @@ async function findSurface(pixels: Pixels, turning: Turning, given: Scale | null
   if (!turning.mirrored) return { scale: { pxToMm: page.pxToMm, source: 'photo-page' }, polygon: page.roomPx };
   // Seen in a mirror the markers are none: they are found before flipping, and picture and sheet are then flipped alike.
   const flip = (width: number): Homography => [-1, 0, width, 0, 1, 0, 0, 0, 1];
-  const roomWidth = PHOTO_PAGE_ROOM.w * (options.photoPageScale?.x ?? 1);
-  const pxToMm = multiply(flip(roomWidth), multiply(page.pxToMm, flip(size.width)));
+  const pxToMm = multiply(flip(page.roomMm.w), multiply(page.pxToMm, flip(size.width)));
   return { scale: { pxToMm, source: 'photo-page' }, polygon: page.roomPx.map((p) => ({ x: size.width - p.x, y: p.y })).reverse() };
 }
 
