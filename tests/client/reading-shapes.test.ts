@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { panned, pxPerScreen, resized, toPicture, wholePicture, zoomed } from '../../src/components/reading/picture-view.ts';
-import { cutAcross, inLasso, outlinePath, rulerTicks, sentimentAt } from '../../src/components/reading/reading-shapes.ts';
+import { panned, pxPerScreen, resized, toPicture, wholePicture, zoomed } from '../../src/composables/picture-view.ts';
+import { cutAcross, inLasso, outlinePath, rulerTicks, sentimentAt } from '../../src/composables/reading-shapes.ts';
 import { createUndoHistory } from '../../src/stores/undo-history.ts';
 
 const picture = { width: 2000, height: 1000 };

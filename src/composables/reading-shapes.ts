@@ -1,7 +1,7 @@
 /** Geometry of the reading made ready to draw: numbers in, path strings and places out. Pure; picture px. */
-import { ringContains } from '../../../server/engine/geometry/ring.ts';
-import type { Box, Outline, Point } from '../../../server/engine/geometry/types.ts';
-import type { ReadPart, ReadSentiment } from '../../../server/engine/reading/types.ts';
+import { ringContains } from '../../server/engine/geometry/ring.ts';
+import type { Box, Outline, Point } from '../../server/engine/geometry/types.ts';
+import type { ReadPart, ReadSentiment } from '../../server/engine/reading/types.ts';
 
 const figure = (value: number) => String(Math.round(value * 10) / 10);
 const at = ({ x, y }: Point) => `${figure(x)} ${figure(y)}`;

@@ -2,7 +2,7 @@
  * Which part of a picture is seen: zoom and pan as a view box in picture px. Pure. The view box always has the proportions
  * of the window it is seen through, so that a screen pixel is the same length both ways.
  */
-import type { Box, Point } from '../../../server/engine/geometry/types.ts';
+import type { Box, Point } from '../../server/engine/geometry/types.ts';
 
 export interface Size { width: number; height: number }
 
