@@ -42,7 +42,7 @@ export function ensurePostgres() {
 }
 
 /**
- * @param {{ throwAway?: boolean }} [options] a throw-away one is quick instead of safe, and its folder goes with it
+ * @param {{ throwAway?: boolean }} [options] a throw-away one is quick instead of safe, and `stop()` without a mode takes its folder away too
  * @returns {Promise<{ url: string, bin: string, folder: string, stop: (mode?: string) => Promise<void>, start: () => Promise<void> }>} `url` leads to the database `inkmuster`
  */
 export async function startCluster({ throwAway = false } = {}) {
@@ -93,12 +93,12 @@ export async function startCluster({ throwAway = false } = {}) {
     start: async () => {
       if (startAt(port) !== 0) throw new Error(lastWords(paths.log));
     },
-    stop: async (mode = 'fast') => {
+    stop: async (mode) => {
       rmSync(join(paths.users, String(process.pid)), { force: true });
       // Another start in the same checkout may still be using it.
       if (!throwAway && readdirSync(paths.users).some((pid) => isAlive(Number(pid)))) return;
-      if (asOwner('pg_ctl', ['stop', '-w', '-s', '-t', '15', '-m', mode, '-D', paths.data]) !== 0) asOwner('pg_ctl', ['stop', '-w', '-s', '-t', '5', '-m', 'immediate', '-D', paths.data]);
-      if (throwAway && mode === 'fast') rmSync(folder, { recursive: true, force: true });
+      if (asOwner('pg_ctl', ['stop', '-w', '-s', '-t', '15', '-m', mode ?? 'fast', '-D', paths.data]) !== 0) asOwner('pg_ctl', ['stop', '-w', '-s', '-t', '5', '-m', 'immediate', '-D', paths.data]);
+      if (throwAway && mode === undefined) rmSync(folder, { recursive: true, force: true });
     },
   };
 }
