@@ -1,50 +1,84 @@
 /**
  * The lean of a sheet, from all baselines together.
  *
- * Input: sentiments as outlines on the true sheet, mm or any other unit with its `unit` size; not mutated. Output: one angle per sentiment, degrees clockwise as seen.
+ * Input: sentiments as lists of parts' outlines on the true sheet, any unit; not mutated. Output: one angle per sentiment, degrees clockwise
+ * as seen; exactly 0 where the lean cannot be told from 0.
  *
- * Feet are the lowest places of strokes: letters stand with them on baselines. Of two feet of one sentiment that stand on the same
- * baseline the line through them leans as the sheet does. All pairs vote: an angle's score is the sum over pairs of how well they line up at that
- * angle, weighted by their distance, within the unevenness that type has by nature. The mode is found on a coarse grid and refined. The sheet's lean is
- * believed where the score falls off clearly towards 0; else it is 0. A sentiment's own lean is taken where it differs by more than OWN_LEAN_DEG and
- * its own feet tell so much more clearly. Cost: pairs of feet times angles tried.
+ * Letters stand with their feet on baselines and reach with their heads to a common height. Of two feet (or two heads) of one sentiment that
+ * stand on the same line, the straight line through them leans as the sheet does. All pairs vote: an angle's score is the sum over pairs of how well
+ * they line up at that angle, the farther apart the more, within the unevenness that type has by nature; each sentiment's pairs count by
+ * its number of feet, not its square. The best angle is found on a coarse grid and refined. How surely it is told follows from how
+ * the sentiments disagree (the sandwich estimate of P. Huber, 1967).
+ * A sentiment's own lean counts only where feet and heads, each alone, agree on it and it differs by more than OWN_LEAN_DEG.
+ * Cost: pairs times angles tried.
  */
 import type { Outline, Point } from '../geometry/types.ts';
 
 const MAX_LEAN_DEG = 15;
-const COARSE_DEG = 0.25;
-/** Feet on one baseline stand within this share of their strokes' usual height of it. */
+const COARSE_DEG = 0.25, FINEST_DEG = 0.002;
+/** Feet on one line stand within this share of their letters' usual height of it. */
 const UNEVENNESS = 0.06;
-const MAX_FEET = 120;
-/** A lean whose score is better than no lean by less than this share cannot be told from none. */
-const CLEARLY_BETTER = 0.05;
-const OWN_LEAN_DEG = 2;
-const OWN_CLEARLY_BETTER = 0.5;
+/** Of long sentiments every second or third foot speaks. */
+const MAX_FEET = 100;
+/** A lean within this many standard errors of 0 is none; nor is one that moves the end of a wide sentiment by less than a tenth of a pixel. */
+const SURE_ERRORS = 2.5, LEAST_LEAN_DEG = 0.02;
+const OWN_LEAN_DEG = 2, OWN_AGREEMENT_DEG = 1;
+/** How many times better feet and heads must line up at a sentiment's own lean than at the sheet's. */
+const OWN_BETTER = 1.6;
+const OWN_LEAST_FEET = 5;
 
 interface Pair { dx: number; dy: number; weight: number; width: number }
+interface Votes { feet: Pair[]; heads: Pair[]; count: number }
 
 export function findLeans(sentiments: readonly Outline[][]): number[] {
-  const pairs = sentiments.map(footPairs);
-  const common = bestLean(pairs.flat());
-  return pairs.map((own) => {
-    if (own.length < 12) return common.angleDeg;
-    const lean = bestLean(own);
-    if (Math.abs(lean.angleDeg - common.angleDeg) <= OWN_LEAN_DEG) return common.angleDeg;
-    return lean.score > (1 + OWN_CLEARLY_BETTER) * score(own, common.angleDeg) ? lean.angleDeg : common.angleDeg;
-  });
+  const votes = sentiments.map(votesOf);
+  const common = surely(votes.map((v) => [...v.feet, ...v.heads]));
+  return votes.map((own) => ownLean(own, common) ?? common);
+}
+
+function ownLean({ feet, heads, count }: Votes, common: number): number | null {
+  if (count < OWN_LEAST_FEET) return null;
+  const byFeet = bestLean(feet), byHeads = bestLean(heads);
+  if (Math.abs(byFeet.angleDeg - byHeads.angleDeg) > OWN_AGREEMENT_DEG) return null;
+  const both = bestLean([...feet, ...heads]);
+  if (Math.abs(both.angleDeg - common) <= OWN_LEAN_DEG) return null;
+  const clear = byFeet.score > OWN_BETTER * score(feet, common) && byHeads.score > OWN_BETTER * score(heads, common);
+  return clear ? rounded(both.angleDeg) : null;
+}
+
+/** The lean common to all, or 0. */
+function surely(votes: readonly Pair[][]): number {
+  const { angleDeg } = bestLean(votes.flat());
+  const slope = Math.tan((angleDeg * Math.PI) / 180);
+  let spread = 0, curvature = 0;
+  for (const own of votes) {
+    let pull = 0;
+    for (const { dx, dy, weight, width } of own) {
+      const off = (dy - slope * dx) / width, near = weight * Math.exp(-off * off), rate = dx / width;
+      pull += 2 * near * off * rate;
+      curvature += near * rate * rate * (4 * off * off - 2);
+    }
+    spread += pull * pull;
+  }
+  const errorDeg = curvature < 0 ? ((Math.sqrt(spread) / -curvature) * 180) / Math.PI : Infinity;
+  return Math.abs(angleDeg) > Math.max(LEAST_LEAN_DEG, SURE_ERRORS * errorDeg) ? rounded(angleDeg) : 0;
+}
+
+function rounded(angleDeg: number): number {
+  return Math.round(angleDeg * 1000) / 1000;
 }
 
 function bestLean(pairs: readonly Pair[]): { angleDeg: number; score: number } {
   let best = { angleDeg: 0, score: score(pairs, 0) };
-  const level = best.score;
   if (pairs.length === 0) return best;
-  for (let step = COARSE_DEG, centre = 0, reach = MAX_LEAN_DEG; step > 0.004; reach = step, centre = best.angleDeg, step /= 5) {
-    for (let angleDeg = centre - reach; angleDeg <= centre + reach + 1e-9; angleDeg += step) {
-      const s = score(pairs, angleDeg);
+  for (let step = COARSE_DEG, centre = 0, reach = MAX_LEAN_DEG; step > FINEST_DEG; reach = step, centre = best.angleDeg, step /= 5) {
+    const steps = Math.round(reach / step);
+    for (let k = -steps; k <= steps; k++) {
+      const angleDeg = centre + k * step, s = score(pairs, angleDeg);
       if (s > best.score) best = { angleDeg, score: s };
     }
   }
-  return best.score > (1 + CLEARLY_BETTER) * level ? { ...best, angleDeg: Math.round(best.angleDeg * 1000) / 1000 } : { angleDeg: 0, score: level };
+  return best;
 }
 
 function score(pairs: readonly Pair[], angleDeg: number): number {
@@ -57,46 +91,51 @@ function score(pairs: readonly Pair[], angleDeg: number): number {
   return sum;
 }
 
-function footPairs(parts: readonly Outline[]): Pair[] {
-  const feet = parts.flatMap(feetOf);
-  if (feet.length > MAX_FEET) feet.splice(0, feet.length, ...feet.filter((_, i) => i % Math.ceil(feet.length / MAX_FEET) === 0));
+function votesOf(parts: readonly Outline[]): Votes {
   const heights = parts.map(heightOf).sort((a, b) => a - b);
-  const height = heights[heights.length >> 1] || 1, width = UNEVENNESS * height;
+  const height = heights[heights.length >> 1] || 1;
+  const feet = parts.flatMap((part) => extremes(part, 1)), heads = parts.flatMap((part) => extremes(part, -1));
+  return { feet: pairsOf(feet, height), heads: pairsOf(heads, height), count: Math.min(feet.length, heads.length) };
+}
+
+function pairsOf(all: readonly Point[], height: number): Pair[] {
+  const every = Math.ceil(all.length / MAX_FEET), feet = all.filter((_, i) => i % every === 0);
   const pairs: Pair[] = [];
   for (let i = 0; i < feet.length; i++) {
     for (let j = i + 1; j < feet.length; j++) {
       const dx = feet[j].x - feet[i].x, dy = feet[j].y - feet[i].y;
       // Nearer than a letter the feet of one stroke vote for its own shape.
-      if (Math.abs(dx) > height && Math.abs(dy) < 0.35 * Math.abs(dx)) pairs.push({ dx, dy, weight: Math.abs(dx), width });
+      if (Math.abs(dx) > height && Math.abs(dy) < 0.35 * Math.abs(dx)) pairs.push({ dx, dy, weight: Math.abs(dx) / feet.length, width: UNEVENNESS * height });
     }
   }
   return pairs;
 }
 
 function heightOf(part: Outline): number {
-  const ys = part.rings[0].map((p) => p.y);
-  return Math.max(...ys) - Math.min(...ys);
+  let top = Infinity, bottom = -Infinity;
+  for (const { y } of part.rings[0]) { top = Math.min(top, y); bottom = Math.max(bottom, y); }
+  return bottom - top;
 }
 
-/** Lowest places of the outer edge: y grows towards them and shrinks after, with ink above. */
-function feetOf(part: Outline): Point[] {
-  const ring = part.rings[0], n = ring.length, feet: Point[] = [];
+/** Lowest (`sense` 1) or highest (−1) places of the outer edge that stand out by a seventh of the part's height. */
+function extremes(part: Outline, sense: 1 | -1): Point[] {
+  const ring = part.rings[0], n = ring.length, found: Point[] = [];
   const prominence = 0.15 * heightOf(part);
   for (let i = 0; i < n; i++) {
-    const p = ring[i];
-    if (ring[(i + n - 1) % n].y > p.y || ring[(i + 1) % n].y > p.y) continue;
-    if (rises(ring, i, 1, prominence) && rises(ring, i, -1, prominence)) feet.push(p);
+    const y = sense * ring[i].y;
+    if (sense * ring[(i + n - 1) % n].y > y || sense * ring[(i + 1) % n].y > y) continue;
+    if (recedes(ring, i, 1, sense, prominence) && recedes(ring, i, -1, sense, prominence)) found.push(ring[i]);
   }
-  return feet;
+  return found;
 }
 
-/** Going on from a foot the edge climbs by `prominence` before it gets lower than the foot. */
-function rises(ring: readonly Point[], i: number, step: 1 | -1, prominence: number): boolean {
-  const n = ring.length;
+/** Going on from an extreme the edge draws back by `prominence` before it goes beyond it. Of two level ends of a flat foot one counts. */
+function recedes(ring: readonly Point[], i: number, step: 1 | -1, sense: 1 | -1, prominence: number): boolean {
+  const n = ring.length, own = sense * ring[i].y;
   for (let k = 1; k < n; k++) {
-    const y = ring[(i + step * k + n * k) % n].y;
-    if (y > ring[i].y || (y === ring[i].y && step === 1)) return false;
-    if (y < ring[i].y - prominence) return true;
+    const y = sense * ring[(i + step * k + n * k) % n].y;
+    if (y > own || (y === own && step === 1)) return false;
+    if (y < own - prominence) return true;
   }
   return false;
 }

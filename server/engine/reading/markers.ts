@@ -8,6 +8,7 @@
  */
 import type { Point } from '../geometry/types.ts';
 import { applyHomography, homographyFrom, invertHomography, multiply, type Homography } from './homography.ts';
+import { fitLine, meetingPlace, type Line } from './line-fit.ts';
 import { loadOpenCv, type Cv } from './opencv.ts';
 import { markerCorners, PHOTO_PAGE_DICTIONARY, PHOTO_PAGE_MARKERS, PHOTO_PAGE_ROOM } from './photo-page-layout.ts';
 
@@ -119,16 +120,10 @@ function refineCorners(picture: Brightness, corners: readonly Point[]): Point[] 
   const sides = corners.map((a, i) => fitSide(picture, a, corners[(i + 1) % 4], corners));
   return corners.map((corner, i) => {
     const one = sides[(i + 3) % 4], other = sides[i];
-    if (!one || !other) return corner;
-    const across = one.dx * other.dy - one.dy * other.dx;
-    if (Math.abs(across) < 0.1) return corner;
-    const t = ((other.x - one.x) * other.dy - (other.y - one.y) * other.dx) / across;
-    const met = { x: one.x + t * one.dx, y: one.y + t * one.dy };
-    return distance(met, corner) < 0.12 * distance(corners[0], corners[2]) ? met : corner;
+    const met = one && other && meetingPlace(one, other);
+    return met && distance(met, corner) < 0.12 * distance(corners[0], corners[2]) ? met : corner;
   });
 }
-
-interface Line { x: number; y: number; dx: number; dy: number }
 
 /** Crossings are looked for from half a cell outside to half a cell inside, on the middle four fifths of the side. */
 function fitSide(picture: Brightness, a: Point, b: Point, corners: readonly Point[]): Line | null {
@@ -167,26 +162,6 @@ function sample(picture: Brightness, x: number, y: number): number {
   const u = Math.min(width - 1.001, Math.max(0, x - 0.5)), v = Math.min(height - 1.001, Math.max(0, y - 0.5));
   const i = Math.floor(u), j = Math.floor(v), f = u - i, g = v - j, at = j * width + i;
   return (values[at] * (1 - f) + values[at + 1] * f) * (1 - g) + (values[at + width] * (1 - f) + values[at + width + 1] * f) * g;
-}
-
-/** Total least squares, once more without the points farthest off. */
-function fitLine(points: Point[]): Line {
-  let kept = points, line = through(kept);
-  for (let round = 0; round < 2; round++) {
-    const off = kept.map((p) => Math.abs((p.x - line.x) * line.dy - (p.y - line.y) * line.dx));
-    const limit = 2.5 * (off.slice().sort((a, b) => a - b)[off.length >> 1] + 0.05);
-    kept = kept.filter((_, i) => off[i] <= limit);
-    line = through(kept);
-  }
-  return line;
-}
-
-function through(points: readonly Point[]): Line {
-  const n = points.length, x = points.reduce((s, p) => s + p.x, 0) / n, y = points.reduce((s, p) => s + p.y, 0) / n;
-  let xx = 0, xy = 0, yy = 0;
-  for (const p of points) { xx += (p.x - x) ** 2; xy += (p.x - x) * (p.y - y); yy += (p.y - y) ** 2; }
-  const angle = 0.5 * Math.atan2(2 * xy, xx - yy);
-  return { x, y, dx: Math.cos(angle), dy: Math.sin(angle) };
 }
 
 function distance(a: Point, b: Point): number {

@@ -5,6 +5,7 @@
  * Rejects with ReadingError. Runs on the calling thread. Memory: 4 bytes a pixel while decoding, then 2.
  */
 import type { Control } from '../control.ts';
+import { signedArea } from '../geometry/ring.ts';
 import type { Point } from '../geometry/types.ts';
 import { decodePicture, type Pixels } from './decode.ts';
 import { findParts } from './find-parts.ts';
@@ -12,17 +13,19 @@ import { NO_CORRECTIONS, regroup, withScale } from './grouping.ts';
 import { localScale, multiply, type Homography } from './homography.ts';
 import { mapInk, type InkMap } from './ink-map.ts';
 import { findPhotoPage } from './markers.ts';
-import { storedPlace, turnUpright, uprightSize, type Turning } from './orientation.ts';
+import { findSheet } from './find-sheet.ts';
+import { storedPlace, turnUpright, uprightPlace, uprightSize, type Turning } from './orientation.ts';
 import { estimatePaper, luminance } from './paper.ts';
-import { probePicture } from './probe.ts';
+import { probePicture, type PictureHeader } from './probe.ts';
 import { noInk } from './reading-error.ts';
-import { insetPolygon, regionWithin } from './region.ts';
+import { insetPolygon, regionWithin, type Region } from './region.ts';
 import { fileScale, givenScale, type Scale } from './scale.ts';
 import type { Reading, ReadOptions } from './types.ts';
 
 type Progress = (done: number, stage: string) => void;
 /** What is read, upright picture px; null for everything. */
 interface Surface { scale: Scale | null; polygon: Point[] | null }
+interface Separated { map: InkMap; surface: Surface; turning: Turning; foundCorners: Point[] | null }
 
 /** Within this of a sheet's edge its own shadow shows; a stamp's ink does not reach so far out. */
 const SHEET_EDGE_MM = 0.5;
@@ -32,7 +35,7 @@ export async function readStampSheet(file: Uint8Array, options: ReadOptions, con
   const header = probePicture(file);
   const given = givenScale(options);
   progress(0, 'decoding');
-  const { map, surface, turning } = await separateInk(file, header, given, options, progress);
+  const { map, surface, turning, foundCorners } = await separateInk(file, header, given, options, progress);
 
   progress(0.6, 'finding ink');
   const upright = uprightSize(turning);
@@ -45,6 +48,7 @@ export async function readStampSheet(file: Uint8Array, options: ReadOptions, con
   const bare: Reading = {
     widthPx: upright.width, heightPx: upright.height, pxToMm: null, mmPerPx: null, scaleSource: null,
     groupingGapMm: null, groupingGapPx: 0, parts, links: [], sentiments: [], warnings: [],
+    ...(foundCorners ? { foundCornersPx: foundCorners } : {}),
   };
   const scaled = scale ? withScale(bare, scale.pxToMm, scale.source, scale.source === 'sheet' ? options.sheet?.cornersPx : undefined) : bare;
   const warnings = scale ? [] : [{ code: 'no-scale', message: 'The picture does not say its scale, so sizes are not known yet. Type the scan’s dpi, or drag a ruler over a length that you know.' }];
@@ -55,16 +59,32 @@ export async function readStampSheet(file: Uint8Array, options: ReadOptions, con
 }
 
 /** The pixels are let go of as soon as the map is made. */
-async function separateInk(file: Uint8Array, header: ReturnType<typeof probePicture>, given: Scale | null, options: ReadOptions, progress: Progress): Promise<{ map: InkMap; surface: Surface; turning: Turning }> {
+async function separateInk(file: Uint8Array, header: PictureHeader, given: Scale | null, options: ReadOptions, progress: Progress): Promise<Separated> {
   const pixels = await decodePicture(file, header);
   const turning: Turning = { width: pixels.width, height: pixels.height, orientation: header.orientation, mirrored: options.mirrored ?? false };
   progress(0.3, 'looking for the sheet');
-  const surface = await findSurface(pixels, turning, given, fileScale(header.dpi), options);
+  let surface = await findSurface(pixels, turning, given, fileScale(header.dpi), options);
+  let region = regionOf(pixels, turning, surface.polygon);
+  const sheet = surface.scale?.source === 'sheet' ? null : findSheet(pixels, region);
+  if (sheet) {
+    surface = { ...surface, polygon: sheet.polygon.map((p) => uprightPlace(turning, p)) };
+    region = regionOf(pixels, turning, surface.polygon);
+  }
   progress(0.4, 'levelling light');
-  const region = regionWithin(pixels.width, pixels.height, surface.polygon && surface.polygon.map((p) => storedPlace(turning, p)));
   const map = mapInk(pixels, estimatePaper(pixels, region), region);
   if (!map) throw noInk();
-  return { map, surface, turning };
+  return { map, surface, turning, foundCorners: sheet?.corners ? fromTopLeft(sheet.corners.map((p) => uprightPlace(turning, p))) : null };
+}
+
+function regionOf(pixels: Pixels, turning: Turning, polygon: readonly Point[] | null): Region {
+  return regionWithin(pixels.width, pixels.height, polygon && polygon.map((p) => storedPlace(turning, p)));
+}
+
+/** Clockwise as seen, the corner nearest to the picture's top left first. */
+function fromTopLeft(corners: readonly Point[]): Point[] {
+  const clockwise = signedArea([...corners]) > 0 ? [...corners] : [...corners].reverse();
+  const first = clockwise.reduce((best, p, i) => (p.x + p.y < clockwise[best].x + clockwise[best].y ? i : best), 0);
+  return [...clockwise.slice(first), ...clockwise.slice(0, first)];
 }
 
 async function findSurface(pixels: Pixels, turning: Turning, given: Scale | null, fromFile: Scale | null, options: ReadOptions): Promise<Surface> {

@@ -36,6 +36,8 @@ export interface Reading {
   warnings: { code: string; message: string }[];
   /** Corners of the sheet in the picture, where they are known: only ink within them is read. */
   sheetPx?: Point[];
+  /** The sheet's corners as they were found in a photograph, from the top left on, clockwise: to be proposed, since the sheet's size is not known. */
+  foundCornersPx?: Point[];
   /** Parts that splits divided, as they were read; `parts` has their pieces instead. */
   undivided?: ReadPart[];
   /** What this grouping was asked for, so that a scale given later groups alike. */

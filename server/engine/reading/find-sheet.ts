@@ -1,0 +1,185 @@
+/**
+ * Where in a picture the stamped paper lies: on a desk, on a scanner's lid, or on another paper.
+ *
+ * Input: pixels and the region looked at; not mutated. Output: the polygon within which ink is read, and the sheet's four corners where it shows them;
+ * null where the paper fills the region. Places are those of the pixels given.
+ *
+ * Cells of the reduced picture that hardly differ from their neighbours grow together into surfaces; light falls off so gently that it does not part
+ * them, paper's edge does. The largest surface is the paper, or else the ground on which a paper lies: a four-sided surface of its own that holds
+ * most of what else is in the picture. Corners are where straight lines along its edges meet, fitted at full size.
+ * Cost: CELL_SAMPLES² pixels per cell, about CELLS_ALONG² cells.
+ */
+import { convexHull } from '../geometry/hull.ts';
+import { ringContains, signedArea } from '../geometry/ring.ts';
+import type { Point } from '../geometry/types.ts';
+import type { Pixels } from './decode.ts';
+import { DisjointSets } from './gaps.ts';
+import { fitLine, meetingPlace, type Line } from './line-fit.ts';
+import { luminance } from './paper.ts';
+import { insetPolygon, type Region } from './region.ts';
+
+export interface FoundSheet {
+  polygon: Point[];
+  /** In order, clockwise as seen; null where the sheet is cut off or not four-sided. */
+  corners: Point[] | null;
+}
+
+const CELLS_ALONG = 320, CELL_SAMPLES = 4;
+/** Neighbouring cells that differ by less are one surface: half of what counts as ink, since an edge may fall across a cell. */
+const SAME_SURFACE = 0.045;
+/** Of the dark the eye and the sensor tell little: differences below this brightness count from it. */
+const DARK = 40;
+/** Shares of the region: smaller is no paper; larger fills it. */
+const LEAST_PAPER = 0.12, FILLS = 0.985;
+/** Share of its hull that a four-sided surface fills, and share of a hull's area that its best four corners keep. */
+const QUAD_FILL = 0.93;
+/** A paper on another must hold this share of what stands out on both. */
+const HOLDS_DETAIL = 0.7;
+
+interface Cells { factor: number; columns: number; rows: number; colours: Float32Array; known: Uint8Array }
+interface Surface { cells: number; hull: Point[]; leader: number }
+
+export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
+  const cells = reduceToCells(pixels, region);
+  const total = cells.known.reduce((sum, k) => sum + k, 0);
+  const labels = growSurfaces(cells);
+  const surfaces = largeSurfaces(cells, labels, LEAST_PAPER * total);
+  if (surfaces.length === 0) return null;
+  const paper = surfaces.slice(1).find((inner) => liesOn(cells, labels, inner, surfaces[0])) ?? surfaces[0];
+  const hullCells = Math.abs(signedArea(paper.hull));
+  if (hullCells > FILLS * total) return null;
+
+  const quad = bestQuad(paper.hull);
+  const px = (p: Point) => ({ x: p.x * cells.factor, y: p.y * cells.factor });
+  if (quad && Math.abs(signedArea(quad)) > QUAD_FILL * hullCells && quad.every((p) => isInside(p, cells))) {
+    const corners = refine(pixels, quad.map(px), cells.factor);
+    return { polygon: insetPolygon(corners, Math.max(3, cells.factor / 2)), corners };
+  }
+  return { polygon: insetPolygon(paper.hull.map(px), 1.5 * cells.factor), corners: null };
+}
+
+/** A corner at the picture's border is where the sheet is cut off. */
+function isInside(p: Point, cells: Cells): boolean {
+  return p.x > 1.5 && p.y > 1.5 && p.x < cells.columns - 1.5 && p.y < cells.rows - 1.5;
+}
+
+function reduceToCells(pixels: Pixels, region: Region): Cells {
+  const factor = Math.max(1, Math.ceil(Math.max(pixels.width, pixels.height) / CELLS_ALONG));
+  const columns = Math.max(1, Math.floor(pixels.width / factor)), rows = Math.max(1, Math.floor(pixels.height / factor));
+  const colours = new Float32Array(3 * columns * rows), known = new Uint8Array(columns * rows);
+  const step = Math.max(1, factor / CELL_SAMPLES), samples = Math.min(factor, CELL_SAMPLES);
+  for (let row = 0, cell = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++, cell++) {
+      const y0 = row * factor, x0 = column * factor;
+      if (x0 < region.from[y0] || x0 + factor > region.to[y0] || x0 < region.from[Math.min(pixels.height, y0 + factor) - 1] || x0 + factor > region.to[Math.min(pixels.height, y0 + factor) - 1]) continue;
+      known[cell] = 1;
+      for (let i = 0; i < samples; i++) {
+        for (let j = 0; j < samples; j++) {
+          const at = 4 * (Math.min(pixels.height - 1, Math.floor(y0 + i * step)) * pixels.width + Math.min(pixels.width - 1, Math.floor(x0 + j * step)));
+          for (let c = 0; c < 3; c++) colours[3 * cell + c] += pixels.rgba[at + c] / (samples * samples);
+        }
+      }
+    }
+  }
+  return { factor, columns, rows, colours, known };
+}
+
+function growSurfaces({ columns, rows, colours, known }: Cells): Int32Array {
+  const sets = new DisjointSets(columns * rows);
+  const same = (i: number, j: number) => {
+    if (!known[i] || !known[j]) return false;
+    for (let c = 0; c < 3; c++) {
+      const p = colours[3 * i + c], q = colours[3 * j + c];
+      if (Math.abs(p - q) > SAME_SURFACE * Math.max(p, q, DARK)) return false;
+    }
+    return true;
+  };
+  for (let row = 0, i = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++, i++) {
+      if (column > 0 && same(i, i - 1)) sets.join(i, i - 1);
+      if (row > 0 && same(i, i - columns)) sets.join(i, i - columns);
+    }
+  }
+  return Int32Array.from({ length: columns * rows }, (_, i) => (known[i] ? sets.find(i) : -1));
+}
+
+/** In descending order of size. */
+function largeSurfaces(cells: Cells, labels: Int32Array, least: number): Surface[] {
+  const counts = new Map<number, number>();
+  for (const label of labels) if (label >= 0) counts.set(label, (counts.get(label) ?? 0) + 1);
+  const large = [...counts].filter(([, n]) => n >= least).sort((a, b) => b[1] - a[1]);
+  return large.map(([leader, count]) => ({ leader, cells: count, hull: convexHull(edgePlaces(cells, labels, leader)) }));
+}
+
+/** Corners of the first and last cell of each row: enough for a hull. */
+function edgePlaces({ columns, rows }: Cells, labels: Int32Array, leader: number): Point[] {
+  const places: Point[] = [];
+  for (let row = 0; row < rows; row++) {
+    let first = -1, last = -1;
+    for (let column = 0; column < columns; column++) if (labels[row * columns + column] === leader) { if (first < 0) first = column; last = column; }
+    if (first >= 0) places.push({ x: first, y: row }, { x: first, y: row + 1 }, { x: last + 1, y: row }, { x: last + 1, y: row + 1 });
+  }
+  return places;
+}
+
+function liesOn(cells: Cells, labels: Int32Array, inner: Surface, outer: Surface): boolean {
+  const quad = bestQuad(inner.hull);
+  if (!quad || Math.abs(signedArea(quad)) < QUAD_FILL * Math.abs(signedArea(inner.hull))) return false;
+  let within = 0, around = 0;
+  for (let row = 0, i = 0; row < cells.rows; row++) {
+    for (let column = 0; column < cells.columns; column++, i++) {
+      if (!cells.known[i] || labels[i] === inner.leader || labels[i] === outer.leader) continue;
+      const middle = { x: column + 0.5, y: row + 0.5 };
+      // A cell across the inner paper's own edge is of neither.
+      if (ringContains(insetPolygon(quad, 2), middle)) within++;
+      else if (!ringContains(insetPolygon(quad, -2), middle) && ringContains(outer.hull, middle)) around++;
+    }
+  }
+  return within > 0 && within >= HOLDS_DETAIL * (within + around);
+}
+
+/** Corners are left out one by one, the one whose going loses least area first, until four are left. */
+function bestQuad(hull: readonly Point[]): Point[] | null {
+  const corners = [...hull];
+  while (corners.length > 4) {
+    let least = Infinity, gone = 0;
+    corners.forEach((b, i) => {
+      const a = corners[(i + corners.length - 1) % corners.length], c = corners[(i + 1) % corners.length];
+      const loss = Math.abs((b.x - a.x) * (c.y - a.y) - (b.y - a.y) * (c.x - a.x));
+      if (loss < least) { least = loss; gone = i; }
+    });
+    corners.splice(gone, 1);
+  }
+  return corners.length === 4 ? corners : null;
+}
+
+function refine(pixels: Pixels, quad: readonly Point[], cell: number): Point[] {
+  const sides = quad.map((a, i) => fitEdge(pixels, a, quad[(i + 1) % 4], 2 * cell));
+  return quad.map((corner, i) => {
+    const one = sides[(i + 3) % 4], other = sides[i];
+    const met = one && other && meetingPlace(one, other);
+    return met && Math.hypot(met.x - corner.x, met.y - corner.y) < 4 * cell ? met : corner;
+  });
+}
+
+/** Along the side's middle nine tenths, where brightness changes most within `reach` to either side. */
+function fitEdge(pixels: Pixels, a: Point, b: Point, reach: number): Line | null {
+  const length = Math.hypot(b.x - a.x, b.y - a.y), places: Point[] = [];
+  if (length < 20) return null;
+  const nx = -(b.y - a.y) / length, ny = (b.x - a.x) / length;
+  for (let s = 0.05; s <= 0.95; s += 0.01) {
+    const x = a.x + s * (b.x - a.x), y = a.y + s * (b.y - a.y);
+    let steepest = 0, at = 0;
+    for (let d = -reach; d <= reach; d++) {
+      const change = Math.abs(brightnessAt(pixels, x + (d + 1) * nx, y + (d + 1) * ny) - brightnessAt(pixels, x + (d - 1) * nx, y + (d - 1) * ny));
+      if (change > steepest) { steepest = change; at = d; }
+    }
+    if (steepest > 8) places.push({ x: x + at * nx, y: y + at * ny });
+  }
+  return places.length < 20 ? null : fitLine(places);
+}
+
+function brightnessAt({ width, height, rgba }: Pixels, x: number, y: number): number {
+  const at = 4 * (Math.min(height - 1, Math.max(0, Math.floor(y))) * width + Math.min(width - 1, Math.max(0, Math.floor(x))));
+  return luminance(rgba[at], rgba[at + 1], rgba[at + 2]);
+}
