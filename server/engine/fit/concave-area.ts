@@ -6,7 +6,7 @@
  */
 import { DistanceField } from '../geometry/distance-field.ts';
 import { boxCentre, outlineBox, ringBox, ringContains, signedArea } from '../geometry/ring.ts';
-import type { Outline, Point, Ring } from '../geometry/types.ts';
+import type { Box, Outline, Point, Ring } from '../geometry/types.ts';
 
 export interface ConcaveArea {
   field: DistanceField;
@@ -78,19 +78,23 @@ function outsidePoles(field: DistanceField): ConcaveArea['poles'] {
       if (here <= 0) continue;
       const top = [-1, 0, 1].every((dj) => [-1, 0, 1].every((di) => values[j + dj][i + di] <= here));
       if (!top) continue;
-      const pole = walkUp(outside, { x: box.x + i * stepX, y: box.y + j * stepY }, Math.max(stepX, stepY));
-      if (!poles.some((p) => Math.hypot(p.x - pole.x, p.y - pole.y) < 10 * POLE_MM)) poles.push(pole);
+      const pole = walkUp(outside, { x: box.x + i * stepX, y: box.y + j * stepY }, Math.max(stepX, stepY), box);
+      if (pole !== null && !poles.some((p) => Math.hypot(p.x - pole.x, p.y - pole.y) < 10 * POLE_MM)) poles.push(pole);
     }
   }
   return poles;
 }
 
+/** A gain that is a smaller share of the step is none. */
+const WORTH_WALKING = 0.01;
 const DIRECTIONS = Array.from({ length: 8 }, (_, k) => ({ x: Math.cos((k * Math.PI) / 4), y: Math.sin((k * Math.PI) / 4) }));
 
-function walkUp(height: (x: number, y: number) => number, start: Point, firstStep: number): Point & { depthMm: number } {
+/** Null where the way up leads out of the box: the far outside, where it never ends. */
+function walkUp(height: (x: number, y: number) => number, start: Point, firstStep: number, box: Box): (Point & { depthMm: number }) | null {
   let { x, y } = start, depthMm = height(x, y);
   for (let step = firstStep; step > POLE_MM;) {
-    const next = DIRECTIONS.map((d) => ({ x: x + d.x * step, y: y + d.y * step })).find((p) => height(p.x, p.y) > depthMm);
+    if (x <= box.x || y <= box.y || x >= box.x + box.w || y >= box.y + box.h) return null;
+    const next = DIRECTIONS.map((d) => ({ x: x + d.x * step, y: y + d.y * step })).find((p) => height(p.x, p.y) > depthMm + step * WORTH_WALKING);
     if (next) ({ x, y } = next);
     else step /= 2;
     depthMm = height(x, y);

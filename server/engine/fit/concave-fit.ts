@@ -12,7 +12,7 @@
  * in squares, never in time. Cost: typically 10 to 100 squares of a few dozen field questions each.
  */
 import type { Point } from '../geometry/types.ts';
-import { borderInArea, turnedInk } from './border-in-area.ts';
+import { borderInArea, inkDistance, turnedInk } from './border-in-area.ts';
 import { addConstraint, emptyConstraints, largestBorder, type BorderConstraints } from './border-programme.ts';
 import { addHullBounds, addLocalBounds, type Surroundings } from './cell-bound.ts';
 import type { ConcaveArea } from './concave-area.ts';
@@ -56,6 +56,8 @@ export function concaveFit(artwork: PreparedArtwork, turned: TurnedArtwork, die:
 
 const CLIMB_START_MM = 1;
 const CLIMB_END_MM = 0.002;
+/** Least gain, as a share of the step, for another step of the same length. */
+const WORTH_A_STEP = 0.05;
 
 function climb(s: Search, from: Place): Place {
   let best = from;
@@ -65,8 +67,10 @@ function climb(s: Search, from: Place): Place {
     addSquare(rows, best.x, best.y, r);
     const next = largestBorder(rows, best.x, best.y, r);
     const border = next === null ? -Infinity : borderInArea(s.area, s.ink, next.x, next.y, best.border);
-    if (next !== null && border > best.border + 1e-9) best = { x: next.x, y: next.y, border };
-    else r /= 4;
+    const gain = border - best.border;
+    if (next !== null && gain > 0) best = { x: next.x, y: next.y, border };
+    // Zigzags gain less and less without an end; a shorter step gets over them.
+    if (!(gain > r * WORTH_A_STEP)) r /= 4;
   }
   return best;
 }
@@ -95,7 +99,7 @@ function searchSquares(s: Search, start: Place, topBound: number, { gapMm, worth
     squares++;
     const r = half * Math.SQRT2;
     const border = borderInArea(s.area, s.ink, x, y, enough() - r);
-    let bound = Math.min(parentBound, border + r);
+    let bound = Math.min(parentBound, border + r, swallowedBound(s, x, y, r));
     if (border > best.border) best = { x, y, border };
     if (bound > enough()) {
       const rows = cleared(s.rows);
@@ -126,6 +130,13 @@ function searchSquares(s: Search, start: Place, topBound: number, { gapMm, worth
   return { place: best, bound: Math.min(topBound, Math.max(best.border, dropped)), squares };
 }
 const QUARTERS = [[-1, -1], [1, -1], [-1, 1], [1, 1]] as const;
+
+/** A pole that stays in ink wherever in the square the place is keeps the border at its depth: a plate over a window. */
+function swallowedBound({ area, ink }: Search, x: number, y: number, r: number): number {
+  let bound = Infinity;
+  for (const pole of area.poles) if (-pole.depthMm < bound && inkDistance(ink, pole.x - x, pole.y - y) >= r) bound = -pole.depthMm;
+  return bound;
+}
 
 /** Far from the optimum, in large squares, only the hull is worth its rows. */
 function addHullOrPairs(s: Search, x: number, y: number, border: number, r: number, rows: BorderConstraints): void {
