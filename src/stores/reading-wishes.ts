@@ -78,4 +78,8 @@ export function changeScale(wishes: Wishes, scale: Scale, base: Reading): Wishes
   return { ...wishes, scale, groupingGap: (wishes.groupingGap / (before ?? 1)) * (after ?? 1) };
 }
 
-export const sameWishes = (a: Wishes, b: Wishes): boolean => JSON.stringify(a) === JSON.stringify(b);
+/** Whatever the order of their keys: the database has one of its own. */
+export const sameWishes = (a: Wishes, b: Wishes): boolean => inOrder(a) === inOrder(b);
+const inOrder = (value: unknown): string => JSON.stringify(value, (_key, part: unknown) => (
+  part !== null && typeof part === 'object' && !Array.isArray(part) ? Object.fromEntries(Object.entries(part).sort(([p], [q]) => (p < q ? -1 : 1))) : part
+));

@@ -25,10 +25,17 @@ function setWords({ words, x, y, sizeMm, font: name = 'lora' }: SheetWords) {
     if (path.commands.length === 0) continue;
     const { x1, y1, x2, y2 } = path.getBoundingBox();
     Object.assign(box, { x1: Math.min(box.x1, x1), y1: Math.min(box.y1, y1), x2: Math.max(box.x2, x2), y2: Math.max(box.y2, y2) });
-    data += path.toPathData(4);
+    data += path.commands.map(drawn).join('');
   }
   return { data, boxMm: { x: box.x1, y: box.y1, w: box.x2 - box.x1, h: box.y2 - box.y1 } };
 }
+
+const drawn = (command: opentype.PathCommand): string => (
+  command.type === 'Z' ? 'Z'
+    : command.type === 'C' ? `C${command.x1} ${command.y1} ${command.x2} ${command.y2} ${command.x} ${command.y}`
+    : command.type === 'Q' ? `Q${command.x1} ${command.y1} ${command.x} ${command.y}`
+    : `${command.type}${command.x} ${command.y}`
+);
 
 /** The PNG, and the box of each word's ink in mm as the font's own outlines give it. */
 export function drawSheet(words: SheetWords[], options: SheetOptions): { png: Buffer; boxesMm: { x: number; y: number; w: number; h: number }[] } {
