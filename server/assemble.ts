@@ -41,7 +41,7 @@ export async function assemble(config: Config, log: Logger): Promise<Application
   const events = await createEvents(session);
   const queue = await createQueue(db, pool, events, log);
   const engine = createEnginePool(REQUEST_THREADS);
-  const deps: Deps = { db, files: createFileStore(config, db), jobs: queue, events, engine, mail: createMailer(config), config, log };
+  const deps: Deps = { db, files: await createFileStore(config, db), jobs: queue, events, engine, mail: createMailer(config), config, log };
   const features = createFeatures(deps);
   queue.define(features.flatMap((feature) => feature.jobs));
 

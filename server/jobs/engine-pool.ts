@@ -6,7 +6,8 @@ import { MessageChannel } from 'node:worker_threads';
 import { fileURLToPath } from 'node:url';
 import { Piscina } from 'piscina';
 import { AppError } from '../errors/app-error.ts';
-import type { EnginePool } from './types.ts';
+import type { RunTotals } from '../engine/gangrun/types.ts';
+import type { EnginePool, PoolOptions } from './types.ts';
 
 /** What a thread is handed, beside its input. */
 export interface PoolTask {
@@ -18,6 +19,7 @@ export interface PoolTask {
 /** What comes back by the port. After `last` the thread never settles its task: it waits to be ended. */
 export type PoolMessage =
   | { kind: 'progress'; done: number; stage: string }
+  | { kind: 'best'; totals: RunTotals }
   | { kind: 'last'; ok: true; result: unknown }
   | { kind: 'last'; ok: false; error: ExpectedFailure | { message: string; stack?: string } };
 export interface ExpectedFailure { code: string; message: string; status: number }
@@ -42,7 +44,7 @@ export function createEnginePool(threads: number): ClosablePool {
   });
   piscina.on('error', () => undefined);
 
-  async function run<T>(task: string, input: unknown, options: Parameters<EnginePool['run']>[2] = {}): Promise<T> {
+  async function run<T>(task: string, input: unknown, options: PoolOptions = {}): Promise<T> {
     options.signal?.throwIfAborted();
     const { port1, port2 } = new MessageChannel();
     const stop = new Int32Array(new SharedArrayBuffer(4));
@@ -55,10 +57,14 @@ export function createEnginePool(threads: number): ClosablePool {
       graceTimer = setTimeout(() => thread.abort('stopped'), STOP_GRACE_MS);
     };
     options.signal?.addEventListener('abort', onAbort, { once: true });
+    const onFinish = () => Atomics.store(stop, 0, 1);
+    if (options.finish?.aborted) onFinish();
+    options.finish?.addEventListener('abort', onFinish, { once: true });
 
     const last = new Promise<PoolResult>((resolve, reject) => {
       port1.on('message', (message: PoolMessage) => {
         if (message.kind === 'progress') return options.onProgress?.(message.done, message.stage);
+        if (message.kind === 'best') return options.onBest?.(message.totals);
         if (message.ok) resolve({ ok: true, result: message.result });
         else if ('code' in message.error) resolve({ ok: false, error: message.error });
         else reject(Object.assign(new Error(message.error.message), { stack: message.error.stack }));
@@ -76,6 +82,7 @@ export function createEnginePool(threads: number): ClosablePool {
       clearTimeout(limitTimer);
       clearTimeout(graceTimer);
       options.signal?.removeEventListener('abort', onAbort);
+      options.finish?.removeEventListener('abort', onFinish);
       port1.close();
     }
   }

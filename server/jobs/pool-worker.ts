@@ -12,7 +12,7 @@ const GROWN_BYTES = 900 * 1024 * 1024;
 
 export default async function runTask({ task, input, stop, port }: PoolTask): Promise<PoolResult> {
   const send = (message: PoolMessage) => port.postMessage(message);
-  const control: Control = { stop, onProgress: (done, stage) => send({ kind: 'progress', done, stage }) };
+  const control: Control = { stop, onProgress: (done, stage) => send({ kind: 'progress', done, stage }), onBest: (totals) => send({ kind: 'best', totals }) };
   let message: PoolMessage & { kind: 'last' };
   let trusted = true;
   try {

@@ -107,10 +107,10 @@ async function compute(setting: Setting, definition: JobDefinition, job: JobRow,
     if (now - told < PROGRESS_MS || signal.aborted) return;
     told = now;
     const progress = Math.min(1, Math.max(0, done));
-    // Progress is a courtesy: where it cannot be told, the work goes on.
-    saveProgress(db, job, progress, stage)
-      .then((current) => (current ? events.publish(db, job.studioId, { type: 'job', job: { ...statusOf(job), progress, stage } }) : undefined))
-      .catch(() => undefined);
+    // In one transaction, so that no news of progress comes after that of the end. It is a courtesy: where it cannot be told, the work goes on.
+    db.transaction(async (tx) => {
+      if (await saveProgress(tx, job, progress, stage)) await events.publish(tx, job.studioId, { type: 'job', job: { ...statusOf(job), progress, stage } });
+    }).catch(() => undefined);
   };
   const remainingMs = () => Math.max(1, definition.timeLimitMs - (Date.now() - started));
   const pool: EnginePool = {

@@ -1,6 +1,8 @@
 /** What worker threads can do, by name. Every engine door that takes longer than a moment is here. */
 import type { Control } from '../engine/control.ts';
+import type { CutPart } from '../engine/cutplan/types.ts';
 import type { DieGeometry, FitOptions } from '../engine/fit/types.ts';
+import type { RunOrder } from '../engine/gangrun/types.ts';
 import type { Outline } from '../engine/geometry/types.ts';
 import type { ReadOptions } from '../engine/reading/types.ts';
 
@@ -12,6 +14,8 @@ const all = {
   readStampSheet: async (input: { file: Uint8Array; options: ReadOptions }, control) => (await import('../engine/reading/index.ts')).readStampSheet(input.file, input.options, control),
   pictureViews: async (input: { file: Uint8Array }) => (await import('../features/stamp-sets/picture-views.ts')).pictureViews(input),
   fitTable: async (input: { artworks: Outline[]; dies: DieGeometry[]; options?: FitOptions }) => (await import('../engine/fit/index.ts')).fitTable(input.artworks, input.dies, input.options),
+  planGangRun: async (input: { order: RunOrder }, control) => (await import('../engine/gangrun/index.ts')).planGangRun(input.order, control),
+  planCuts: async (input: { parts: CutPart[]; stock: { widthMm: number; heightMm: number }; options?: { trimMm?: number } }) => (await import('../engine/cutplan/index.ts')).planCuts(input.parts, input.stock, input.options),
 } satisfies Record<string, Task>;
 
 export const tasks: Record<string, ((input: unknown, control: Control) => Promise<unknown>) | undefined> = all as never;

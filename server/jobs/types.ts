@@ -1,6 +1,7 @@
 /** Queued work, as the features see it. The queue itself is behind `Jobs`. */
 import type { Knex } from 'knex';
 import type { z } from 'zod';
+import type { RunTotals } from '../engine/gangrun/types.ts';
 
 export type JobState = 'queued' | 'running' | 'done' | 'failed' | 'cancelled';
 
@@ -51,7 +52,18 @@ export interface Jobs {
   cancel(jobId: string): Promise<void>;
 }
 
+export interface PoolOptions {
+  /** Ends the work; nothing comes of it. */
+  signal?: AbortSignal;
+  /** Asks for the best so far: the work ends early, and its result counts. */
+  finish?: AbortSignal;
+  onProgress?: (done: number, stage: string) => void;
+  /** A better plan was found on the way. */
+  onBest?: (totals: RunTotals) => void;
+  timeLimitMs?: number;
+}
+
 /** Names of the functions in jobs/pool-worker.ts. Errors keep their `code` and message across the thread. */
 export interface EnginePool {
-  run<T = unknown>(task: string, input: unknown, options?: { signal?: AbortSignal; onProgress?: (done: number, stage: string) => void; timeLimitMs?: number }): Promise<T>;
+  run<T = unknown>(task: string, input: unknown, options?: PoolOptions): Promise<T>;
 }

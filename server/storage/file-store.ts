@@ -4,7 +4,6 @@ import type { Knex } from 'knex';
 import type { Config } from '../config.ts';
 import { AppError } from '../errors/app-error.ts';
 import { createFolderStore } from './folder-store.ts';
-import { createS3Store } from './s3-store.ts';
 import type { FileStore } from './types.ts';
 
 export interface ByteStore {
@@ -19,8 +18,8 @@ const KEY = /^[0-9a-f]{32}$/;
 /** A file that nothing points to for so long belongs to something that was rolled back or purged. */
 const ORPHAN_HOURS = 24;
 
-export function createFileStore(config: Config, db: Knex): FileStore {
-  const store = createByteStore(config);
+export async function createFileStore(config: Config, db: Knex): Promise<FileStore> {
+  const store = await createByteStore(config);
   return {
     async put(bytes, mediaType) {
       const key = randomBytes(16).toString('hex');
@@ -42,8 +41,11 @@ export function createFileStore(config: Config, db: Knex): FileStore {
   };
 }
 
-function createByteStore(config: Config): ByteStore {
-  return config.storage.kind === 's3' ? createS3Store(config.storage) : createFolderStore(config.storage.folder);
+async function createByteStore(config: Config): Promise<ByteStore> {
+  if (config.storage.kind === 'folder') return createFolderStore(config.storage.folder);
+  // The package is large, and most installations never need it.
+  const { createS3Store } = await import('./s3-store.ts');
+  return createS3Store(config.storage);
 }
 
 /** Removes files that no column named `…file_key` points to. Answers how many went. */

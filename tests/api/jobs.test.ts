@@ -174,14 +174,26 @@ describe('news', () => {
   });
 });
 
-async function listen(agent: Agent): Promise<{ text: () => string; close: () => void }> {
+describe('news across servers', () => {
+  it('reaches pages that another server process keeps open', async () => {
+    const second = await openKit({ databaseUrl: kit.databaseUrl });
+    const page = await listen(maker, second.url);
+    await kit.deps.events.publish(kit.db, kit.studioId, { type: 'changed', noun: 'batches', id: kit.studioId });
+    await expect.poll(page.text).toContain('"noun":"batches"');
+    page.close();
+    await second.close();
+  });
+});
+
+async function listen(agent: Agent, url = kit.url): Promise<{ text: () => string; close: () => void }> {
   const controller = new AbortController();
-  const answer = await fetch(`${kit.url}/api/events?studioId=${agent.studioId}`, { headers: { Cookie: agent.cookie }, signal: controller.signal });
+  const answer = await fetch(`${url}/api/events?studioId=${agent.studioId}`, { headers: { Cookie: agent.cookie }, signal: controller.signal });
   expect(answer.headers.get('content-type')).toMatch(/^text\/event-stream/);
   expect(answer.headers.get('content-encoding')).toBeNull();
   let text = '';
   void (async () => {
-    for await (const chunk of answer.body!.pipeThrough(new TextDecoderStream())) text += chunk;
+    const decoder = new TextDecoder();
+    for await (const chunk of answer.body as unknown as AsyncIterable<Uint8Array>) text += decoder.decode(chunk, { stream: true });
   })().catch(() => undefined);
   return { text: () => text, close: () => controller.abort() };
 }
