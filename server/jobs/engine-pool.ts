@@ -3,6 +3,7 @@
  * hangs or has grown is ended and replaced, since it cannot be trusted to end itself.
  */
 import { MessageChannel } from 'node:worker_threads';
+import type { MessagePort } from 'node:worker_threads';
 import { fileURLToPath } from 'node:url';
 import { Piscina } from 'piscina';
 import { AppError } from '../errors/app-error.ts';
@@ -14,7 +15,7 @@ export interface PoolTask {
   task: string;
   input: unknown;
   stop: Int32Array<SharedArrayBuffer>;
-  port: import('node:worker_threads').MessagePort;
+  port: MessagePort;
 }
 /** What comes back by the port. After `last` the thread never settles its task: it waits to be ended. */
 export type PoolMessage =

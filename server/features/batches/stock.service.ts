@@ -1,0 +1,37 @@
+/** How the run sheets of a plan are cut from the cardstock on hand. */
+import type { StockCutting } from '../../contract/plans.ts';
+import type { CutPart, CutPlan } from '../../engine/cutplan/types.ts';
+import { AppError, notFound } from '../../errors/app-error.ts';
+import type { Deps } from '../../feature.ts';
+import { gearByIds } from '../gear/gear.queries.ts';
+import { cardstocks } from '../gear/gear-kinds.ts';
+import { planById } from './plans.queries.ts';
+
+export function createStockService({ db, engine }: Pick<Deps, 'db' | 'engine'>) {
+  return {
+    async cutting(studioId: string, batchId: string, planId: string): Promise<{ items: StockCutting[] }> {
+      const plan = await planById(db, studioId, planId);
+      if (!plan || plan.batchId !== batchId) throw notFound('This plan');
+      const stocks = await gearByIds(db, cardstocks, studioId, plan.runs.map((run) => run.cardstockId).filter((id) => id !== null));
+      const items: StockCutting[] = [];
+      for (const run of plan.runs) {
+        const stock = stocks.find(({ id }) => id === run.cardstockId);
+        const quantity = run.plan.totals.sheets;
+        if (!stock || quantity === 0) continue;
+        const { widthMm, heightMm } = run.order.sheet;
+        const parts: CutPart[] = [{ id: 'run sheet', widthMm, heightMm, quantity, keepDirection: false }];
+        const cardstock = { id: stock.id, name: stock.name, colour: stock.colour, widthMm: stock.widthMm, heightMm: stock.heightMm, onHand: stock.onHand };
+        const pieces = [{ what: 'Run sheet', widthMm, heightMm, quantity }];
+        try {
+          const cutPlan = await engine.run<CutPlan>('planCuts', { parts, stock: { widthMm: stock.widthMm, heightMm: stock.heightMm } });
+          items.push({ cardstock, pieces, cutPlan, problem: null });
+        } catch (error) {
+          // A run sheet larger than the stock is nothing that went wrong: it is told beside the others.
+          if (!(error instanceof AppError) || error.status >= 500) throw error;
+          items.push({ cardstock, pieces, cutPlan: null, problem: error.message });
+        }
+      }
+      return { items };
+    },
+  };
+}
