@@ -13,10 +13,15 @@ export function streamEvents(events: Events, studioId: string, req: Request, res
   res.status(200).set({ 'Content-Type': 'text/event-stream', 'Cache-Control': 'no-store, no-transform', 'X-Accel-Buffering': 'no' });
   res.flushHeaders();
   res.write('retry: 2000\n\nevent: open\ndata: {}\n\n');
-  const unsubscribe = events.subscribe(studioId, (event) => {
-    res.write(`event: ${event.type}\ndata: ${JSON.stringify(event)}\n\n`);
-    if (res.writableLength > MAX_UNSENT_BYTES) res.destroy();
-  });
+  const unsubscribe = events.subscribe(
+    studioId,
+    (event) => {
+      res.write(`event: ${event.type}\ndata: ${JSON.stringify(event)}\n\n`);
+      if (res.writableLength > MAX_UNSENT_BYTES) res.destroy();
+    },
+    // The page comes back, and with its `open` it asks for everything again.
+    () => res.end(),
+  );
   const heartbeat = setInterval(() => res.write(': still here\n\n'), HEARTBEAT_MS);
   const end = setTimeout(() => res.end(), LIFETIME_MS);
   res.once('close', () => {

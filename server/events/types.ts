@@ -10,5 +10,6 @@ export type StudioEvent =
 export interface Events {
   /** Told when the given transaction commits; never when it rolls back. */
   publish(db: Knex, studioId: string, event: StudioEvent): Promise<void>;
-  subscribe(studioId: string, listener: (event: StudioEvent) => void): () => void;
+  /** `onGap`: news may have been missed, since the database was away; whoever shows something asks for it again. */
+  subscribe(studioId: string, listener: (event: StudioEvent) => void, onGap?: () => void): () => void;
 }

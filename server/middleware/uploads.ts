@@ -92,6 +92,5 @@ function tooLarge(maxBytes: number, maxFiles: number): AppError {
 }
 
 function shownName(name: string): string {
-  // eslint-disable-next-line no-control-regex -- control characters are what has to go
   return name.replace(/[\u0000-\u001f\u007f]/g, '').split(/[\\/]/).pop()!.trim().slice(0, 200) || 'file';
 }
