@@ -60,7 +60,8 @@ export function useReadingTools(editor: ReturnType<typeof useReadingEditor>, say
     const next = new Set(adds ? picked.value : []);
     // Picked once more, one that is picked already is let go.
     const letGo = adds && sentiments.length === 1 && isPicked(sentiments[0]);
-    for (const { read } of sentiments) for (const id of read.partIds) (letGo ? next.delete(id) : next.add(id));
+    const ids = sentiments.flatMap(({ read }) => read.partIds);
+    ids.forEach((id) => (letGo ? next.delete(id) : next.add(id)));
     picked.value = next;
   }
 

@@ -39,6 +39,7 @@ export function useRefresh(): (...nouns: string[]) => Promise<void> {
   const cache = useQueryCache();
   const studio = useStudio();
   return async (...nouns) => {
-    await Promise.all(nouns.map((noun) => cache.invalidateQueries({ key: studioKey(studio.id ?? '', noun) })));
+    // A query that fails says so where it is shown; the change itself has been made.
+    await Promise.allSettled(nouns.map((noun) => cache.invalidateQueries({ key: studioKey(studio.id ?? '', noun) })));
   };
 }

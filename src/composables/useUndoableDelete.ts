@@ -9,6 +9,8 @@ interface Removal {
   restore: () => Promise<unknown>;
   /** Lists that show it. */
   nouns: string[];
+  /** Leaves the thing's own page, before its lists ask anew. */
+  leave?: () => Promise<unknown>;
 }
 
 /** Puts a thing in the bin and offers to take it out again at once. Asks nothing: a ConfirmButton has asked. True where it is gone. */
@@ -16,13 +18,14 @@ export function useUndoableDelete(): (removal: Removal) => Promise<boolean> {
   const notices = useNotices();
   const refresh = useRefresh();
 
-  return async ({ what, remove, restore, nouns }) => {
+  return async ({ what, remove, restore, nouns, leave }) => {
     try {
       await remove();
     } catch (error) {
       notices.show({ kind: 'failed', text: `${what} was not deleted. ${wordsOf(error)}` });
       return false;
     }
+    await leave?.();
     await refresh(...nouns);
     const undo = async () => {
       try {

@@ -27,6 +27,8 @@ const ACTION_MS = 20_000;
 export const useNotices = defineStore('notices', () => {
   const spoken = ref('');
   const notices = ref<Notice[]>([]);
+  /** The person has gone from one page to another, so that the next one's title may take the focus. */
+  const moved = ref(false);
   const question = shallowRef<(Question & { answer: (yes: boolean) => void }) | null>(null);
   let lastId = 0;
 
@@ -37,6 +39,7 @@ export const useNotices = defineStore('notices', () => {
   return {
     spoken,
     notices,
+    moved,
     question,
     dismiss,
     /** Read out by screen readers, not shown. The same words twice are read twice. */
