@@ -30,6 +30,8 @@ export function autoGap(links: readonly Link[], outlines: readonly Outline[]): n
   const sorted = [...links].sort((a, b) => a.distance - b.distance);
   const clusters = outlines.map(clusterOf), sets = new DisjointSets(outlines.length);
   if (sorted.length === 0) return Math.max(1e-6, ...clusters.map((c) => c.core));
+  const plain = plainStep(sorted, clusters);
+  if (plain !== null) return plain;
   const stepAfter = (k: number) => (k < sorted.length - 1 ? Math.min(STEP_LIMIT, Math.log(sorted[k + 1].distance / Math.max(sorted[k].distance, 1e-9))) : BEYOND_LAST);
   let kept = 0;
   let best = { score: -Infinity, gap: 0 };
@@ -42,6 +44,18 @@ export function autoGap(links: readonly Link[], outlines: readonly Outline[]): n
     if (score > best.score) best = { score, gap: last ? ABOVE_LONGEST * sorted[k].distance : Math.sqrt(sorted[k].distance * sorted[k + 1].distance) };
   }
   return best.gap;
+}
+
+/**
+ * A sheet of few sentiments far apart needs no weighing, and has too few links for it: from one link to the next the gap grows by
+ * CLEAR_STEP, to more than CLEAR_CORES letter heights, which no line of a wording keeps from the next.
+ */
+const CLEAR_STEP = 4, CLEAR_CORES = 3, TALL_RANK = 0.9;
+
+function plainStep(sorted: readonly Link[], clusters: readonly Cluster[]): number | null {
+  const cores = clusters.map(({ core }) => core).sort((a, b) => a - b), tall = cores[Math.floor(TALL_RANK * (cores.length - 1))];
+  const k = sorted.findIndex(({ distance }, i) => i > 0 && distance > CLEAR_STEP * sorted[i - 1].distance && distance > CLEAR_CORES * tall);
+  return k === -1 ? null : Math.sqrt(sorted[k - 1].distance * sorted[k].distance);
 }
 
 /** Merges the two groups of a link and tells the evidence that there was for it. */

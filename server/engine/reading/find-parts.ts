@@ -12,8 +12,8 @@ import type { Box, Point } from '../geometry/types.ts';
 import { findComponents, type Component } from './components.ts';
 import { traceContours } from './contour.ts';
 import { boxDistance } from './gaps.ts';
-import type { InkMap } from './ink-map.ts';
-import { maskInk } from './ink-mask.ts';
+import { INK_LEVEL, type InkMap } from './ink-map.ts';
+import { maskInk, type InkMask } from './ink-mask.ts';
 import { segmentDistanceSq, simplifyRing } from './simplify.ts';
 import type { ReadPart } from './types.ts';
 
@@ -27,13 +27,15 @@ const UNKNOWN_MM_PER_PX = 25.4 / 300;
 const DOT_REACH = 4;
 /** Smaller than this is dust even beside letters: no ink prints so fine a dot. */
 const SPECK_MM = 0.12;
+/** Blur makes specks look larger, not heavier: one no larger than this counts by the disc that its ink would fill. */
+const BLURRED_DUST_MM = 0.45;
 const EDGE_PX = 2;
 
 export function findParts(map: InkMap, polygon: readonly Point[] | null, mmPerPx: number | null): ReadPart[] {
   const mask = maskInk(map);
   const tolerance = mmPerPx === null ? PART_TOLERANCE_PX.unknown : Math.min(PART_TOLERANCE_PX.most, Math.max(PART_TOLERANCE_PX.least, PART_TOLERANCE_MM / mmPerPx));
   const scale = mmPerPx ?? UNKNOWN_MM_PER_PX;
-  const pieces = withoutDust(findComponents(mask.ink, mask.width, mask.height), scale);
+  const pieces = withoutDust(findComponents(mask.ink, mask.width, mask.height), mask, scale);
   const parts: ReadPart[] = [];
   for (const piece of pieces) {
     const traced = traceContours(mask, piece);
@@ -50,18 +52,31 @@ function hundredth(v: number): number {
   return Math.round(v * 100) / 100;
 }
 
-function withoutDust(pieces: readonly Component[], mmPerPx: number): Component[] {
+function withoutDust(pieces: readonly Component[], mask: InkMask, mmPerPx: number): Component[] {
   const boxOf = (c: Component): Box => ({ x: c.left, y: c.top, w: c.right - c.left + 1, h: c.bottom - c.top + 1 });
-  const size = (c: Component) => Math.max(c.right - c.left, c.bottom - c.top) + 1;
-  const least = SPECK_MM / mmPerPx, dust = DUST_MM / mmPerPx;
-  const large = pieces.filter((c) => size(c) >= dust).map(boxOf).sort((a, b) => a.x - b.x);
-  return pieces.filter((piece) => {
-    if (size(piece) >= dust) return true;
-    // A pixel alone is a whole dot only where pixels are coarse.
-    if (size(piece) < least || piece.pixels < 2) return false;
-    const box = boxOf(piece), reach = DOT_REACH * size(piece);
-    return large.some((b) => b.x - reach <= box.x + box.w && boxDistance(b, box) <= reach);
+  const least = SPECK_MM / mmPerPx, dust = DUST_MM / mmPerPx, blurred = BLURRED_DUST_MM / mmPerPx;
+  const sizes = pieces.map((c) => {
+    const size = Math.max(c.right - c.left, c.bottom - c.top) + 1;
+    return size > blurred ? size : Math.min(size, discOf(c, mask));
   });
+  const large = pieces.filter((_, i) => sizes[i] >= dust).map(boxOf);
+  return pieces.filter((piece, i) => {
+    if (sizes[i] >= dust) return true;
+    // A pixel alone is a whole dot only where pixels are coarse.
+    if (sizes[i] < least || piece.pixels < 2) return false;
+    const box = boxOf(piece), reach = DOT_REACH * sizes[i];
+    return large.some((b) => boxDistance(b, box) <= reach);
+  });
+}
+
+/** Diameter of the disc of full ink that weighs as much as what is there, the blurred rim included. */
+function discOf(piece: Component, mask: InkMask): number {
+  const rim = 2;
+  let ink = 0;
+  for (let y = Math.max(0, piece.top - rim); y <= Math.min(mask.height - 1, piece.bottom + rim); y++) {
+    for (let x = Math.max(0, piece.left - rim); x <= Math.min(mask.width - 1, piece.right + rim); x++) ink += Math.max(0, mask.values[y * mask.width + x] - 0.25 * mask.floor);
+  }
+  return 2 * Math.sqrt(ink / INK_LEVEL / Math.PI);
 }
 
 function touchesEdge(ring: readonly Point[], polygon: readonly Point[]): boolean {

@@ -4,9 +4,10 @@
  * Input: pixels and the region looked at; not mutated. Output: the polygon within which ink is read, and the sheet's four corners where it shows them;
  * null where the paper fills the region. Places are those of the pixels given.
  *
- * Cells of the reduced picture that hardly differ from their neighbours grow together into surfaces; light falls off so gently that it does not part
- * them, paper's edge does. The largest surface is the paper, or else the ground on which a paper lies: a four-sided surface of its own that holds
- * most of what else is in the picture. Corners are where straight lines along its edges meet, fitted at full size.
+ * Cells of the reduced picture that are even in themselves and hardly differ from their neighbours grow together into surfaces; light falls off so
+ * gently that it does not part them. Cells with an edge across them join nothing: along a slanting edge they would lead from one side to the other by
+ * small steps. The surface that reaches farthest round is the paper, or else the ground on which a paper lies: a four-sided surface of its
+ * own that holds most of what else is in the picture. Corners are where straight lines along its edges meet, fitted at full size.
  * Cost: CELL_SAMPLES² pixels per cell, about CELLS_ALONG² cells.
  */
 import { convexHull } from '../geometry/hull.ts';
@@ -29,6 +30,8 @@ const CELLS_ALONG = 320, CELL_SAMPLES = 4;
 const SAME_SURFACE = 0.045;
 /** Of the dark the eye and the sensor tell little: differences below this brightness count from it. */
 const DARK = 40;
+/** A cell whose brightness spreads by more than this share, and by this many times the usual, has an edge in it. */
+const UNEVEN_SHARE = 0.035, UNEVEN_TIMES = 2.2;
 /** Shares of the region: smaller is no paper; larger fills it. */
 const LEAST_PAPER = 0.12, FILLS = 0.985;
 /** Share of its hull that a four-sided surface fills, and share of a hull's area that its best four corners keep. */
@@ -36,7 +39,14 @@ const QUAD_FILL = 0.93;
 /** A paper on another must hold this share of what stands out on both. */
 const HOLDS_DETAIL = 0.7;
 
-interface Cells { factor: number; columns: number; rows: number; colours: Float32Array; known: Uint8Array }
+interface Cells {
+  factor: number; columns: number; rows: number;
+  colours: Float32Array;
+  /** 0 outside the region. */
+  known: Uint8Array;
+  /** 1 where an edge or other detail runs across. */
+  uneven: Uint8Array;
+}
 interface Surface { cells: number; hull: Point[]; leader: number }
 
 export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
@@ -45,8 +55,9 @@ export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
   const labels = growSurfaces(cells);
   const surfaces = largeSurfaces(cells, labels, LEAST_PAPER * total);
   if (surfaces.length === 0) return null;
-  const paper = surfaces.slice(1).find((inner) => liesOn(cells, labels, inner, surfaces[0])) ?? surfaces[0];
-  const hullCells = Math.abs(signedArea(paper.hull));
+  const ground = surfaces.reduce((widest, s) => (hullArea(s) > hullArea(widest) ? s : widest));
+  const paper = surfaces.find((inner) => inner !== ground && liesOn(cells, labels, inner, ground)) ?? ground;
+  const hullCells = hullArea(paper);
   if (hullCells > FILLS * total) return null;
 
   const quad = bestQuad(paper.hull);
@@ -58,6 +69,10 @@ export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
   return { polygon: insetPolygon(paper.hull.map(px), 1.5 * cells.factor), corners: null };
 }
 
+function hullArea(surface: Surface): number {
+  return Math.abs(signedArea(surface.hull));
+}
+
 /** A corner at the picture's border is where the sheet is cut off. */
 function isInside(p: Point, cells: Cells): boolean {
   return p.x > 1.5 && p.y > 1.5 && p.x < cells.columns - 1.5 && p.y < cells.rows - 1.5;
@@ -66,28 +81,42 @@ function isInside(p: Point, cells: Cells): boolean {
 function reduceToCells(pixels: Pixels, region: Region): Cells {
   const factor = Math.max(1, Math.ceil(Math.max(pixels.width, pixels.height) / CELLS_ALONG));
   const columns = Math.max(1, Math.floor(pixels.width / factor)), rows = Math.max(1, Math.floor(pixels.height / factor));
-  const colours = new Float32Array(3 * columns * rows), known = new Uint8Array(columns * rows);
-  const step = Math.max(1, factor / CELL_SAMPLES), samples = Math.min(factor, CELL_SAMPLES);
+  const cells: Cells = { factor, columns, rows, colours: new Float32Array(3 * columns * rows), known: new Uint8Array(columns * rows), uneven: new Uint8Array(columns * rows) };
+  const spreads = new Float32Array(columns * rows);
   for (let row = 0, cell = 0; row < rows; row++) {
+    const y0 = row * factor, y1 = y0 + factor - 1;
     for (let column = 0; column < columns; column++, cell++) {
-      const y0 = row * factor, x0 = column * factor;
-      if (x0 < region.from[y0] || x0 + factor > region.to[y0] || x0 < region.from[Math.min(pixels.height, y0 + factor) - 1] || x0 + factor > region.to[Math.min(pixels.height, y0 + factor) - 1]) continue;
-      known[cell] = 1;
-      for (let i = 0; i < samples; i++) {
-        for (let j = 0; j < samples; j++) {
-          const at = 4 * (Math.min(pixels.height - 1, Math.floor(y0 + i * step)) * pixels.width + Math.min(pixels.width - 1, Math.floor(x0 + j * step)));
-          for (let c = 0; c < 3; c++) colours[3 * cell + c] += pixels.rgba[at + c] / (samples * samples);
-        }
-      }
+      const x0 = column * factor, x1 = x0 + factor;
+      if (x0 < Math.max(region.from[y0], region.from[y1]) || x1 > Math.min(region.to[y0], region.to[y1])) continue;
+      cells.known[cell] = 1;
+      spreads[cell] = sampleCell(pixels, x0, y0, factor, cells.colours, 3 * cell);
     }
   }
-  return { factor, columns, rows, colours, known };
+  const usual = spreads.filter((_, i) => cells.known[i] === 1).sort();
+  const limit = Math.max(UNEVEN_SHARE, UNEVEN_TIMES * (usual[usual.length >> 1] ?? 0));
+  spreads.forEach((spread, i) => { if (spread > limit) cells.uneven[i] = 1; });
+  return cells;
 }
 
-function growSurfaces({ columns, rows, colours, known }: Cells): Int32Array {
+/** Writes the mean colour; answers with the standard deviation of the brightness as a share of its mean. */
+function sampleCell(pixels: Pixels, x0: number, y0: number, factor: number, colours: Float32Array, at: number): number {
+  const samples = Math.min(factor, CELL_SAMPLES), step = factor / samples, n = samples * samples;
+  let sum = 0, squares = 0;
+  for (let i = 0; i < samples; i++) {
+    for (let j = 0; j < samples; j++) {
+      const from = 4 * ((y0 + Math.floor((i + 0.5) * step)) * pixels.width + x0 + Math.floor((j + 0.5) * step));
+      const r = pixels.rgba[from], g = pixels.rgba[from + 1], b = pixels.rgba[from + 2], l = luminance(r, g, b);
+      colours[at] += r / n; colours[at + 1] += g / n; colours[at + 2] += b / n;
+      sum += l; squares += l * l;
+    }
+  }
+  return Math.sqrt(Math.max(0, squares / n - (sum / n) ** 2)) / Math.max(sum / n, DARK);
+}
+
+function growSurfaces({ columns, rows, colours, known, uneven }: Cells): Int32Array {
   const sets = new DisjointSets(columns * rows);
   const same = (i: number, j: number) => {
-    if (!known[i] || !known[j]) return false;
+    if (!known[i] || !known[j] || uneven[i] || uneven[j]) return false;
     for (let c = 0; c < 3; c++) {
       const p = colours[3 * i + c], q = colours[3 * j + c];
       if (Math.abs(p - q) > SAME_SURFACE * Math.max(p, q, DARK)) return false;
@@ -124,7 +153,7 @@ function edgePlaces({ columns, rows }: Cells, labels: Int32Array, leader: number
 
 function liesOn(cells: Cells, labels: Int32Array, inner: Surface, outer: Surface): boolean {
   const quad = bestQuad(inner.hull);
-  if (!quad || Math.abs(signedArea(quad)) < QUAD_FILL * Math.abs(signedArea(inner.hull))) return false;
+  if (!quad || Math.abs(signedArea(quad)) < QUAD_FILL * hullArea(inner)) return false;
   let within = 0, around = 0;
   for (let row = 0, i = 0; row < cells.rows; row++) {
     for (let column = 0; column < cells.columns; column++, i++) {
