@@ -4,7 +4,8 @@ import type { CutPart } from '../engine/cutplan/types.ts';
 import type { DieGeometry, FitOptions } from '../engine/fit/types.ts';
 import type { RunOrder } from '../engine/gangrun/types.ts';
 import type { Outline } from '../engine/geometry/types.ts';
-import type { ReadOptions } from '../engine/reading/types.ts';
+import type { Reading, ReadOptions } from '../engine/reading/types.ts';
+import type { Wishes } from '../features/stamp-sets/sentiment-follow.ts';
 
 type Task = (input: never, control: Control) => Promise<unknown>;
 
@@ -12,6 +13,7 @@ const all = {
   bcryptHash: async (input: { digest: string; cost: number }) => (await import('bcryptjs')).hashSync(input.digest, input.cost),
   bcryptCompare: async (input: { digest: string; hash: string }) => (await import('bcryptjs')).compareSync(input.digest, input.hash),
   readStampSheet: async (input: { file: Uint8Array; options: ReadOptions }, control) => (await import('../engine/reading/index.ts')).readStampSheet(input.file, input.options, control),
+  groupSentiments: async (input: { base: Reading; wishes: Wishes }) => (await import('../features/stamp-sets/sentiment-follow.ts')).groupSentiments(input),
   pictureViews: async (input: { file: Uint8Array }) => (await import('../features/stamp-sets/picture-views.ts')).pictureViews(input),
   fitTable: async (input: { artworks: Outline[]; dies: DieGeometry[]; options?: FitOptions }) => (await import('../engine/fit/index.ts')).fitTable(input.artworks, input.dies, input.options),
   planGangRun: async (input: { order: RunOrder }, control) => (await import('../engine/gangrun/index.ts')).planGangRun(input.order, control),

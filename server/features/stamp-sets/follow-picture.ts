@@ -2,22 +2,19 @@
 import type { Knex } from 'knex';
 import { newId } from '../../db/database.ts';
 import { boxOverlap } from '../../engine/geometry/box-match.ts';
-import type { Reading } from '../../engine/reading/types.ts';
 import { findSettings } from '../studio/studio.queries.ts';
 import type { PictureRow } from './pictures.queries.ts';
-import { correctedReading, followReading } from './sentiment-follow.ts';
-import type { FollowedSentiment } from './sentiment-follow.ts';
+import { followReading } from './sentiment-follow.ts';
+import type { FollowedSentiment, GroupedSentiments, Wishes } from './sentiment-follow.ts';
 import { knownSentiments, saveReadSentiments } from './sentiments.queries.ts';
 import type { OutlinedRow, ReadSentimentRow } from './sentiments.queries.ts';
 
-/** `picture` as changed and locked; `base` its reading before the person's wishes. Answers the reading under them. */
-export async function followPicture(tx: Knex, picture: PictureRow, base: Reading): Promise<Reading> {
-  const wishes = { scale: picture.scale, groupingGap: picture.grouping_gap, corrections: picture.corrections };
-  const reading = correctedReading(base, wishes);
-  const everything = wishes.corrections.setAside.length === 0 ? reading : correctedReading(base, { ...wishes, corrections: { ...wishes.corrections, setAside: [] } });
+export const wishesOf = (row: Pick<PictureRow, 'scale' | 'grouping_gap' | 'corrections'>): Wishes => ({ scale: row.scale, groupingGap: row.grouping_gap, corrections: row.corrections });
 
+/** `picture` as changed and locked; `grouped` its reading under the wishes that now stand in it. */
+export async function followPicture(tx: Knex, picture: PictureRow, grouped: GroupedSentiments): Promise<void> {
   const known = await knownSentiments(tx, picture.studio_id, picture.id);
-  const followed = followReading(reading, everything, known.map((row) => ({ id: row.id, place: row.place, present: row.present, uprightDeg: row.upright_deg })));
+  const followed = followReading(grouped, known.map((row) => ({ id: row.id, place: row.place, present: row.present, uprightDeg: row.upright_deg })));
   const byId = new Map(known.map((row) => [row.id, row]));
   const rows = followed.map((sentiment) => toRow(picture, sentiment)).filter((row) => differs(row, byId.get(row.id)));
 
@@ -25,7 +22,6 @@ export async function followPicture(tx: Knex, picture: PictureRow, base: Reading
   const gone = known.filter((row) => row.present && !given.has(row.id)).map((row): ReadSentimentRow => ({ ...readPartOf(row), present: false }));
   const { trimMm } = await findSettings(tx, picture.studio_id);
   await saveReadSentiments(tx, [...rows, ...gone], trimMm);
-  return reading;
 }
 
 function toRow(picture: PictureRow, s: FollowedSentiment): ReadSentimentRow {

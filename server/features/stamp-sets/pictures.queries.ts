@@ -44,7 +44,12 @@ export function findPicture(db: Knex, place: PlaceOfPicture, options: { deleted?
   return (options.deleted ? query.whereNotNull('deleted_at') : query.whereNull('deleted_at')).first(COLUMNS);
 }
 
-/** With its reading, held until the transaction ends, so that sentiments follow one change at a time. */
+/** With its reading. */
+export function readPicture(db: Knex, place: { studioId: string; pictureId: string }): Promise<ReadPictureRow | undefined> {
+  return db<ReadPictureRow>('readings').where({ studio_id: place.studioId, id: place.pictureId, deleted_at: null }).first([...COLUMNS, 'reading']);
+}
+
+/** The same, held until the transaction ends, so that sentiments follow one change at a time. */
 export function lockPicture(tx: Knex, place: { studioId: string; pictureId: string }): Promise<ReadPictureRow | undefined> {
   return tx<ReadPictureRow>('readings').where({ studio_id: place.studioId, id: place.pictureId, deleted_at: null }).forUpdate().first([...COLUMNS, 'reading']);
 }

@@ -13,8 +13,9 @@ import type { UploadedFile } from '../../middleware/mount.ts';
 import { READ_PICTURE, RECOGNISE_WORDS } from './stamp-sets.jobs.ts';
 import { findPicture, insertPicture, lockPicture, readingOf, setPictureDeleted, toPicture, updatePicture } from './pictures.queries.ts';
 import type { PictureRow } from './pictures.queries.ts';
-import { followPicture } from './follow-picture.ts';
+import { followPicture, wishesOf } from './follow-picture.ts';
 import { flipWishes, resizeWishes } from './sentiment-follow.ts';
+import type { GroupedSentiments } from './sentiment-follow.ts';
 import { findStampSet, touchStampSet } from './stamp-sets.queries.ts';
 import { sentimentsOfPicture, toSentiment } from './sentiments.queries.ts';
 
@@ -22,7 +23,7 @@ type Wish = BodyOf<(typeof stampSetRoutes)['PUT /studios/:studioId/stamp-sets/:i
 export interface PicturePlace { studioId: string; stampSetId: string; pictureId: string }
 type By = { id: string };
 
-export function createPictureService({ db, files, jobs, events }: Deps) {
+export function createPictureService({ db, files, jobs, events, engine }: Deps) {
   const changed = (tx: Knex, studioId: string, stampSetId: string) => events.publish(tx, studioId, { type: 'changed', noun: 'stamp-sets', id: stampSetId });
 
   async function startReading(tx: Knex, row: PictureRow, by: By): Promise<PictureRow> {
@@ -79,7 +80,7 @@ export function createPictureService({ db, files, jobs, events }: Deps) {
       const answer = await db.transaction(async (tx) => {
         const row = await lockPicture(tx, place);
         if (!row || row.version !== version) return null;
-        const wishes = resizeWishes({ scale: row.scale, groupingGap: row.grouping_gap, corrections: row.corrections }, { widthPx: row.width_px, heightPx: row.height_px }, stored);
+        const wishes = resizeWishes(wishesOf(row), { widthPx: row.width_px, heightPx: row.height_px }, stored);
         const changedRow = await updatePicture(tx, place.studioId, row.id, {
           file_key: stored.fileKey, file_name: stored.fileName, width_px: stored.widthPx, height_px: stored.heightPx, view_file_key: null, small_file_key: null,
           scale: wishes.scale, corrections: wishes.corrections, grouping_gap: typeof row.grouping_gap === 'number' && row.reading?.mmPerPx === null ? 'auto' : row.grouping_gap,
@@ -95,12 +96,18 @@ export function createPictureService({ db, files, jobs, events }: Deps) {
     },
 
     async correct(place: PicturePlace, wish: Wish): Promise<PictureResult> {
+      const before = await findPicture(db, place);
+      if (!before || before.version !== wish.version) throw await staleOr404(place);
+      const base = (await readingOf(db, place))?.reading;
+      if (!base) throw conflict('not-read', 'This picture has not been read yet. Its sentiments can be corrected when it has.');
+      // Grouped outside the transaction, which would hold its rows meanwhile; the version tells whether it still holds.
+      const wishes = { scale: wish.scale, groupingGap: wish.groupingGap, corrections: wish.corrections };
+      const grouped = await engine.run<GroupedSentiments>('groupSentiments', { base, wishes });
       const answer = await db.transaction(async (tx) => {
         const row = await lockPicture(tx, place);
-        if (!row || row.stamp_set_id !== place.stampSetId || row.version !== wish.version) return null;
-        if (!row.reading) throw conflict('not-read', 'This picture has not been read yet. Its sentiments can be corrected when it has.');
+        if (!row || row.version !== wish.version || row.job_id !== before.job_id) return null;
         const next = await updatePicture(tx, place.studioId, row.id, { scale: wish.scale, grouping_gap: wish.groupingGap, corrections: wish.corrections }, { edit: true });
-        await followPicture(tx, next!, row.reading);
+        await followPicture(tx, next!, grouped);
         await touchStampSet(tx, place.studioId, place.stampSetId);
         await changed(tx, place.studioId, place.stampSetId);
         return { picture: toPicture(next!), sentiments: (await sentimentsOfPicture(tx, place.studioId, row.id)).map(toSentiment) };
@@ -114,7 +121,7 @@ export function createPictureService({ db, files, jobs, events }: Deps) {
         const row = await lockPicture(tx, place);
         if (!row || row.stamp_set_id !== place.stampSetId || row.version !== wish.version) return null;
         const flips = wish.mirrored !== undefined && wish.mirrored !== row.mirrored;
-        const wishes = { scale: row.scale, groupingGap: row.grouping_gap, corrections: row.corrections };
+        const wishes = wishesOf(row);
         const next = flips ? flipWishes(wishes, row.width_px) : wishes;
         const updated = await updatePicture(tx, place.studioId, row.id, { mirrored: wish.mirrored ?? row.mirrored, looks_mirrored: false, scale: next.scale, corrections: next.corrections, ...(flips ? FLIPPED : {}) }, { edit: true });
         const queued = await startReading(tx, updated!, by);

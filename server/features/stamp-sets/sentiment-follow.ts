@@ -26,6 +26,18 @@ export function correctedReading(base: Reading, wishes: Wishes): Reading {
   return regroup(scaled, wishes.groupingGap, wishes.corrections);
 }
 
+/** What rows of sentiments are made of; far smaller than the reading. */
+export interface GroupedSentiments { widthPx: number; heightPx: number; sentiments: ReadSentiment[]; aside: ReadSentiment[] }
+
+/** Runs in a worker thread: a full sheet takes the better part of a second. */
+export function groupSentiments({ base, wishes }: { base: Reading; wishes: Wishes }): GroupedSentiments {
+  const { widthPx, heightPx, sentiments } = correctedReading(base, wishes);
+  if (wishes.corrections.setAside.length === 0) return { widthPx, heightPx, sentiments, aside: [] };
+  const everything = correctedReading(base, { ...wishes, corrections: { ...wishes.corrections, setAside: [] } });
+  const kept = new Set(sentiments.flatMap(({ partIds }) => partIds));
+  return { widthPx, heightPx, sentiments, aside: everything.sentiments.filter(({ partIds }) => !partIds.some((part) => kept.has(part))) };
+}
+
 function scaleOptions(scale: Exclude<Scale, { kind: 'file' }>): Parameters<typeof applyScale>[1] {
   if (scale.kind === 'typed') return { dpi: scale.dpi };
   if (scale.kind === 'ruler') return { ruler: { from: scale.from, to: scale.to, lengthMm: scale.lengthMm } };
@@ -42,15 +54,10 @@ export interface FollowedSentiment {
   angleDeg: number; inkAreaMm2: number | null; thinnestStrokeMm: number | null;
 }
 
-/**
- * One entry for each sentiment of the reading and for each that is set aside; rows that the reading does not give any more are
- * not among them. `everything` is the reading with nothing set aside.
- */
-export function followReading(reading: Reading, everything: Reading, known: readonly KnownSentiment[]): FollowedSentiment[] {
-  const kept = new Set(reading.sentiments.flatMap((sentiment) => sentiment.partIds));
-  const away = everything.sentiments.filter((sentiment) => !sentiment.partIds.some((part) => kept.has(part)));
-  const found = [...reading.sentiments.map((s) => ({ s, setAside: false })), ...away.map((s) => ({ s, setAside: true }))];
-  const places = found.map(({ s }) => placeOf(s.boxPx, reading));
+/** One entry for each sentiment and for each that is set aside; rows that the reading does not give any more are not among them. */
+export function followReading(grouped: GroupedSentiments, known: readonly KnownSentiment[]): FollowedSentiment[] {
+  const found = [...grouped.sentiments.map((s) => ({ s, setAside: false })), ...grouped.aside.map((s) => ({ s, setAside: true }))];
+  const places = found.map(({ s }) => placeOf(s.boxPx, grouped));
   const ids = rowsByPlace(places, known);
   return found.map(({ s, setAside }, i) => {
     const row = known.find(({ id }) => id === ids[i]);

@@ -4,9 +4,11 @@ import { Scale } from '../../contract/stamp-sets.ts';
 import type { Reading, ReadOptions } from '../../engine/reading/types.ts';
 import type { Deps } from '../../feature.ts';
 import type { JobDefinition } from '../../jobs/types.ts';
-import { followPicture } from './follow-picture.ts';
-import { findPicture, lockPicture, updatePicture } from './pictures.queries.ts';
-import { correctedReading, fittingCorrections, placeOf } from './sentiment-follow.ts';
+import { followPicture, wishesOf } from './follow-picture.ts';
+import { lockPicture, readPicture, updatePicture } from './pictures.queries.ts';
+import type { ReadPictureRow } from './pictures.queries.ts';
+import { correctedReading, fittingCorrections, groupSentiments, placeOf } from './sentiment-follow.ts';
+import type { GroupedSentiments, Wishes } from './sentiment-follow.ts';
 import { storedReading } from './stored-reading.ts';
 import { saveWords } from './stamp-words.ts';
 import type { RecognisedWords } from './stamp-words.ts';
@@ -24,8 +26,28 @@ const READ_LIMIT_MS = 120_000;
 const WORDS_LIMIT_MS = 180_000;
 /** Share of the bar that the picture to look at takes. */
 const VIEW_SHARE = 0.2;
+/** And what the reading takes; the rest is grouping under the person's wishes. */
+const READ_SHARE = 0.75;
+const UNCORRECTED: Wishes = { scale: { kind: 'file' }, groupingGap: 'auto', corrections: { joins: [], splits: [], setAside: [] } };
 
-interface ReadOutput { reading: Reading; views: { view: string; small: string } }
+interface ReadOutput {
+  reading: Reading;
+  views: { view: string; small: string };
+  /** Made beforehand under the wishes as they stood. */
+  wishes: Wishes;
+  grouped: GroupedSentiments;
+}
+
+/** The row's wishes where this reading takes the place of what it had: they keep their places, and the gap its width. */
+function wishesFor(row: ReadPictureRow, reading: Reading): Wishes {
+  const wishes = wishesOf(row);
+  const gapWasPx = typeof wishes.groupingGap === 'number' && row.reading !== null && row.reading.mmPerPx === null && wishes.scale.kind === 'file';
+  return {
+    scale: wishes.scale,
+    groupingGap: gapWasPx && reading.mmPerPx !== null ? (wishes.groupingGap as number) * reading.mmPerPx : wishes.groupingGap,
+    corrections: fittingCorrections(wishes.corrections, reading),
+  };
+}
 
 export function readPictureJob({ db, files, jobs, events }: Deps): JobDefinition<ReadPayload, ReadOutput> {
   return {
@@ -49,21 +71,25 @@ export function readPictureJob({ db, files, jobs, events }: Deps): JobDefinition
         mirrored: payload.mirrored,
         ...(payload.sheet?.kind === 'sheet' ? { sheet: { cornersPx: payload.sheet.cornersPx, widthMm: payload.sheet.widthMm, heightMm: payload.sheet.heightMm } } : {}),
       };
-      const reading = await engine.run<Reading>('readStampSheet', { file, options }, { onProgress: (done, stage) => onProgress(VIEW_SHARE + (1 - VIEW_SHARE) * done, stage) });
-      return { reading: storedReading(reading), views };
+      const reading = storedReading(await engine.run<Reading>('readStampSheet', { file, options }, { onProgress: (done, stage) => onProgress(VIEW_SHARE + READ_SHARE * done, stage) }));
+      const row = await readPicture(db, { studioId, pictureId: payload.pictureId });
+      const wishes = row ? wishesFor(row, reading) : UNCORRECTED;
+      const grouped = await engine.run<GroupedSentiments>('groupSentiments', { base: reading, wishes }, { onProgress: () => undefined });
+      return { reading, views, wishes, grouped };
     },
 
-    async save(tx, payload, { reading, views }, { jobId, studioId }) {
+    async save(tx, payload, { reading, views, wishes: before, grouped }, { jobId, studioId }) {
       const row = await lockPicture(tx, { studioId, pictureId: payload.pictureId });
       // Replaced, read again or thrown away in the meantime: this reading is of no use any more.
       if (row?.job_id !== jobId) return { used: false };
-      const gapWasPx = typeof row.grouping_gap === 'number' && row.reading !== null && row.reading.mmPerPx === null && row.scale.kind === 'file';
-      const gap = gapWasPx && reading.mmPerPx !== null ? (row.grouping_gap as number) * reading.mmPerPx : row.grouping_gap;
+      const wishes = wishesFor(row, reading);
       const saved = await updatePicture(tx, studioId, row.id, {
         reading, state: 'read', error: null, view_file_key: views.view, small_file_key: views.small,
-        corrections: fittingCorrections(row.corrections, reading), grouping_gap: gap, width_px: reading.widthPx, height_px: reading.heightPx,
+        corrections: wishes.corrections, grouping_gap: wishes.groupingGap, width_px: reading.widthPx, height_px: reading.heightPx,
       }, { edit: true });
-      const found = await followPicture(tx, saved!, reading);
+      // Somebody corrected the former reading while this one was made: seldom, and worth a moment of this thread.
+      const found = JSON.stringify(wishes) === JSON.stringify(before) ? grouped : groupSentiments({ base: reading, wishes });
+      await followPicture(tx, saved!, found);
       const person = await tx('jobs').where({ id: jobId }).first<{ person_id: string }>('person_id');
       await jobs.enqueue(tx, RECOGNISE_WORDS, { pictureId: row.id, stampSetId: row.stamp_set_id, fileKey: row.file_key }, { studioId, subjectId: row.stamp_set_id, personId: person.person_id, singletonKey: `words:${row.id}` });
       await events.publish(tx, studioId, { type: 'changed', noun: 'stamp-sets', id: row.stamp_set_id });
@@ -87,11 +113,10 @@ export function recogniseWordsJob({ db, files, events }: Deps): JobDefinition<Wo
     timeLimitMs: WORDS_LIMIT_MS,
 
     async run(payload, { studioId, engine, onProgress }) {
-      const row = await findPicture(db, { studioId, stampSetId: payload.stampSetId, pictureId: payload.pictureId });
-      const stored = await db.transaction((tx) => lockPicture(tx, { studioId, pictureId: payload.pictureId }));
-      if (!row || !stored?.reading || row.file_key !== payload.fileKey) return { sentiments: [], looksMirrored: false };
+      const stored = await readPicture(db, { studioId, pictureId: payload.pictureId });
+      if (!stored?.reading || stored.file_key !== payload.fileKey) return { sentiments: [], looksMirrored: false };
       onProgress(0, 'Reading the words');
-      const reading = correctedReading(stored.reading, { scale: stored.scale, groupingGap: stored.grouping_gap, corrections: stored.corrections });
+      const reading = correctedReading(stored.reading, wishesOf(stored));
       const { words, looksMirrored } = await engine.run<{ words: { text: string; tags: string[] }[]; looksMirrored: boolean }>(
         'recogniseWords', { file: await files.get(payload.fileKey), reading, options: { mirrored: stored.mirrored } },
       );
