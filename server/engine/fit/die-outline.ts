@@ -3,6 +3,7 @@
  * rings of drawn shapes clockwise as seen on the page. Arcs are off by at most 0.02 mm (0.01 mm drawn, 0.01 mm offset). An own outline whose
  * rings cross is resolved even-odd. Throws, in the words of the form, on a die that cannot be drawn. Nothing is mutated.
  */
+import { convexHull } from '../geometry/hull.ts';
 import { insetOutline, tidyOutline } from '../geometry/offset.ts';
 import { outlineArea, outlineBox, signedArea } from '../geometry/ring.ts';
 import { translateOutline } from '../geometry/transform.ts';
@@ -22,8 +23,9 @@ export function dieOutline(die: DieGeometry): Outline {
 function ownOutline(outline: Outline): Outline {
   const fault = outlineDrawingFault(outline);
   if (fault !== null) throw new RangeError(fault);
-  const rings = outline.rings.map(distinctRing).filter((ring) => ring.length >= 3 && signedArea(ring) !== 0);
+  const rings = outline.rings.map(distinctRing).filter((ring) => signedArea(convexHull(ring)) > 0);
   const drawn = findCrossing({ rings }) === null ? { rings } : tidyOutline({ rings });
+  if (drawn.rings.length === 0) throw new RangeError('The outline encloses no area.');
   const box = outlineBox(drawn);
   return translateOutline(drawn, -box.x, -box.y);
 }

@@ -4,10 +4,10 @@
  */
 import { concaveFit, type SearchOptions } from './concave-fit.ts';
 import { convexFit, type Place } from './convex-fit.ts';
+import { describedPlace } from './described-place.ts';
 import { centredTarget, turnArtwork, type PreparedArtwork, type PreparedDie, type TurnedArtwork } from './prepared.ts';
 import { tiltedFit, type FitAt } from './tilted-fit.ts';
 import type { Fit, FitOptions } from './types.ts';
-import { fitsWith, verdictOf } from './verdict.ts';
 
 /** A place with what is proven about it. */
 export interface ProvenPlace extends Place { bound: number; artwork: TurnedArtwork }
@@ -36,7 +36,7 @@ export function fitPair(artwork: PreparedArtwork, die: PreparedDie, options: Fit
     if (best === null || place.border > best.border + margin) best = place;
   }
   if (best === null) throw new Error('At least one turn is always tried.');
-  return described(die, best, Math.max(bound, best.border), options);
+  return { ...describedPlace(die, best.artwork, best, options), boundMm: Math.max(bound, best.border) + die.shiftMm };
 }
 
 /** `worthMm`: a place no better than this need not be found; only that there is none better must be proven. */
@@ -48,22 +48,4 @@ export function fitAtTurn(artwork: PreparedArtwork, die: PreparedDie, angleDeg: 
     return { ...place, bound: place.border, artwork: turned };
   }
   return { ...concaveFit(artwork, turned, die, die.concave, { target, ...search }), artwork: turned };
-}
-
-function described(die: PreparedDie, place: ProvenPlace, bound: number, options: FitOptions): Fit {
-  const { box } = place.artwork;
-  const area = die.areaBox;
-  const borderMm = place.border + die.shiftMm;
-  const verdict = die.nothingUsable ? 'no' : verdictOf(borderMm, options);
-  return {
-    fits: !die.nothingUsable && fitsWith(borderMm),
-    borderMm, boundMm: bound + die.shiftMm,
-    centre: { x: place.x, y: place.y },
-    rotationDeg: place.artwork.angleDeg,
-    margins: {
-      left: place.x + box.x - area.x, right: area.x + area.w - (place.x + box.x + box.w),
-      top: place.y + box.y - area.y, bottom: area.y + area.h - (place.y + box.y + box.h),
-    },
-    verdict,
-  };
 }

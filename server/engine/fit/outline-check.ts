@@ -5,6 +5,7 @@
  * Crossings are found by a sweep over the edges' left ends (J. L. Bentley, T. Ottmann 1979, without their tree: edges of an
  * outline are short, so few are open at a time). Cost O(n log n + n·k) with k edges open side by side.
  */
+import { convexHull } from '../geometry/hull.ts';
 import { signedArea } from '../geometry/ring.ts';
 import type { Outline, Point, Ring } from '../geometry/types.ts';
 
@@ -17,10 +18,9 @@ export function outlineFault(outline: unknown): string | null {
   const fault = outlineDrawingFault(outline);
   if (fault !== null) return fault;
   const { rings } = outline as Outline;
-  if (!rings.some((ring) => Math.abs(signedArea(ring)) >= SMALLEST_AREA_MM2)) return 'The outline is a speck: nothing can be cut with it.';
-  const crossing = findCrossing(outline as Outline);
+  const crossing = findCrossing({ rings });
   if (crossing !== null) return `The outline crosses itself near ${crossing.x.toFixed(1)}, ${crossing.y.toFixed(1)} mm.`;
-  return null;
+  return rings.some((ring) => Math.abs(signedArea(ring)) >= SMALLEST_AREA_MM2) ? null : 'The outline is a speck: nothing can be cut with it.';
 }
 
 /** Only what makes drawing and fitting impossible: rings that cross can still be filled even-odd. */
@@ -28,7 +28,8 @@ export function outlineDrawingFault(outline: unknown): string | null {
   if (!isOutline(outline)) return 'The outline has no rings of points.';
   const rings = outline.rings.filter((ring) => ring.length > 0);
   if (!rings.flat().every((p) => Math.abs(p.x) <= LARGEST_MM * 10 && Math.abs(p.y) <= LARGEST_MM * 10)) return 'The outline has points that are no numbers or lie far outside.';
-  return rings.some((ring) => Math.abs(signedArea(ring)) > 0) ? null : 'The outline encloses no area.';
+  // A ring that crosses itself may have as much area on one side as on the other: its hull tells whether it has any.
+  return rings.some((ring) => signedArea(convexHull(ring)) > 0) ? null : 'The outline encloses no area.';
 }
 
 function isOutline(value: unknown): value is Outline {
