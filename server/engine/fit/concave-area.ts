@@ -5,7 +5,7 @@
  * Input and output mm, in the die's coordinates. Cost: a grid of 48 × 48 questions to the field. Nothing is mutated.
  */
 import { DistanceField } from '../geometry/distance-field.ts';
-import { boxCentre, outlineBox, ringBox, ringContains, signedArea } from '../geometry/ring.ts';
+import { boxCentre, outlineBox, ringBox, ringInside, signedArea } from '../geometry/ring.ts';
 import type { Box, Outline, Point, Ring } from '../geometry/types.ts';
 
 export interface ConcaveArea {
@@ -47,7 +47,7 @@ function reflexGroups(area: Outline): ReflexGroup[] {
 
 function reflexCorners(area: Outline): Point[] {
   return area.rings.flatMap((ring, i) => {
-    const depth = area.rings.filter((other, j) => j !== i && ringContains(other, ring[0])).length;
+    const depth = area.rings.filter((other, j) => j !== i && ringInside(ring, other)).length;
     // Run the ring so that the area lies to the right of each edge: outer rings clockwise, holes the other way.
     const clockwise = signedArea(ring) > 0;
     const oriented: Ring = clockwise === (depth % 2 === 0) ? ring : [...ring].reverse();

@@ -57,12 +57,18 @@ export function outlineContains(outline: Outline, p: Point): boolean {
   return inside;
 }
 
+/** Whether a ring lies inside another that it does not cross. Three of its points vote, since one may touch the other's edge. */
+export function ringInside(ring: Ring, other: Ring): boolean {
+  const votes = [0, 1, 2].filter((k) => ringContains(other, ring[Math.floor((k * ring.length) / 3)]));
+  return votes.length >= 2;
+}
+
 /** Filled area, mm², of rings that do not cross: a ring inside an odd number of others is a hole. */
 export function outlineArea(outline: Outline): number {
   let area = 0;
   outline.rings.forEach((ring, i) => {
     if (ring.length < 3) return;
-    const depth = outline.rings.reduce((n, other, j) => n + (j !== i && ringContains(other, ring[0]) ? 1 : 0), 0);
+    const depth = outline.rings.reduce((n, other, j) => n + (j !== i && ringInside(ring, other) ? 1 : 0), 0);
     area += (depth % 2 === 0 ? 1 : -1) * Math.abs(signedArea(ring));
   });
   return area;
