@@ -18,6 +18,8 @@ export interface RouteDefinition {
   /** One line for the API description. */
   summary: string;
   access: Access;
+  /** The studio named is one in the bin; everywhere else such a one is nowhere. */
+  deletedStudio?: boolean;
   /** Path parameters; those named in the path and no others. Ids are UUIDs unless a schema says otherwise. */
   params?: z.ZodType;
   query?: z.ZodType;

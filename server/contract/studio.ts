@@ -40,10 +40,12 @@ const Token = z.string().regex(/^[\w-]{20,64}$/);
 
 export const studioRoutes = routes({
   'GET /studios': { summary: 'Studios the person belongs to', access: 'signed-in', response: z.object({ items: z.array(Membership) }) },
+  'GET /deleted-studios': { summary: 'Studios that the person, as their owner, can still bring back', access: 'signed-in', response: z.object({ items: z.array(z.object({ id: Id, name: z.string(), deletedAt: Instant })) }) },
   'POST /studios': { summary: 'Make a studio and become its owner', access: 'signed-in', status: 201, body: z.object({ name: Name }), response: Studio },
   'GET /studios/:studioId': { summary: 'One studio', access: 'helper', params: StudioParams, response: Studio },
   'PATCH /studios/:studioId': { summary: 'Rename a studio', access: 'owner', params: StudioParams, body: z.object({ version: Version, name: Name }), response: Studio },
   'DELETE /studios/:studioId': { summary: 'Delete a studio; it can be brought back for 30 days', access: 'owner', params: StudioParams, query: z.object({ confirm: Name }) },
+  'POST /studios/:studioId/restore': { summary: 'Bring a deleted studio back', access: 'owner', deletedStudio: true, params: StudioParams, response: Studio },
 
   'GET /studios/:studioId/settings': { summary: 'Settings of a studio', access: 'helper', params: StudioParams, response: StudioSettings },
   'PATCH /studios/:studioId/settings': {

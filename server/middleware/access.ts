@@ -26,8 +26,7 @@ export function createAccess(db: Knex) {
       .join('users as u', 'u.id', 'm.person_id')
       .join('studios as s', 's.id', 'm.studio_id')
       .where({ 'm.studio_id': studioId, 'm.person_id': personId })
-      .whereNull('s.deleted_at')
-      .first('u.id', 'u.name', 'u.email', 'm.role');
+      .first('u.id', 'u.name', 'u.email', 'm.role', 's.deleted_at');
     if (!row) {
       await findPerson(db, personId);
       throw notFound('This studio');
@@ -37,6 +36,7 @@ export function createAccess(db: Knex) {
       req.log?.warn({ personId, studioId, role, needs: route.access, path: req.path }, 'refused by role');
       throw forbidden(refusal(role, route.access));
     }
+    if ((row.deleted_at !== null) !== (route.deletedStudio ?? false)) throw notFound('This studio');
     res.locals.person = { id: row.id, name: row.name, email: row.email } satisfies Person;
     res.locals.role = role;
   };

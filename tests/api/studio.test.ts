@@ -34,6 +34,12 @@ describe('a studio', () => {
     expect(refused.body.errors[0].path).toBe('confirm');
     await owner.delete(`/studios/${body.id}?confirm=For+a+week`).expect(204);
     await owner.get(`/studios/${body.id}`).expect(404);
+    expect((await owner.get('/deleted-studios').expect(200)).body.items).toEqual([{ id: body.id, name: 'For a week', deletedAt: expect.any(String) }]);
+    expect((await maker.get('/deleted-studios').expect(200)).body.items).toEqual([]);
+    await maker.post(`/studios/${body.id}/restore`).expect(404);
+    await owner.post(`/studios/${body.id}/restore`).expect(200);
+    await owner.get(`/studios/${body.id}`).expect(200);
+    await owner.post(`/studios/${body.id}/restore`).expect(404);
   });
 });
 

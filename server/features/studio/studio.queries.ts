@@ -18,6 +18,15 @@ export async function binStudio(db: Knex, id: string): Promise<void> {
   await db('studios').where({ id }).update({ deleted_at: db.fn.now() });
 }
 
+export async function listBinned(db: Knex, ownerId: string): Promise<{ id: string; name: string; deletedAt: string }[]> {
+  const rows = await db('studios as s').join('memberships as m', 'm.studio_id', 's.id').where({ 'm.person_id': ownerId, 'm.role': 'owner' }).whereNotNull('s.deleted_at').orderBy('s.deleted_at', 'desc').select('s.id', 's.name', 's.deleted_at');
+  return rows.map((r) => ({ id: r.id, name: r.name, deletedAt: r.deleted_at.toISOString() }));
+}
+
+export async function unbinStudio(db: Knex, id: string): Promise<void> {
+  await db('studios').where({ id }).update({ deleted_at: null });
+}
+
 const SETTINGS_COLUMNS = {
   unit: 'unit', goodMm: 'good_mm', snugMm: 'snug_mm', gapMm: 'gap_mm', marginMm: 'margin_mm', turnToleranceMm: 'turn_tolerance_mm', trimMm: 'trim_mm',
 } as const;

@@ -19,6 +19,8 @@ export function createStudio(deps: Deps): Feature {
       'GET /studios/:studioId': ({ params, role }) => studio.find(params.studioId, role),
       'PATCH /studios/:studioId': ({ params, body }) => studio.rename(params.studioId, body.version, body.name),
       'DELETE /studios/:studioId': (call) => studio.remove(call.params.studioId, call.query.confirm, actor(call)),
+      'GET /deleted-studios': async ({ person }) => ({ items: await studio.deletedOf(person.id) }),
+      'POST /studios/:studioId/restore': (call) => studio.restore(call.params.studioId, actor(call)),
 
       'GET /studios/:studioId/settings': ({ params }) => studio.settings(params.studioId),
       'PATCH /studios/:studioId/settings': ({ params, body }) => studio.changeSettings(params.studioId, body),

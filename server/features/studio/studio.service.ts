@@ -8,7 +8,7 @@ import { listAudit, recordAudit } from '../account/audit.queries.ts';
 import { hashToken, newToken } from '../account/invitation-token.ts';
 import { findOpenInvitation, insertStudio } from '../account/membership.queries.ts';
 import {
-  binStudio, deleteMembership, findMember, findSettings, findStudio, insertInvitation, listInvitations, listMembers, lockOwners, renameStudio, revokeInvitation, updateRole, updateSettings,
+  binStudio, deleteMembership, findMember, findSettings, findStudio, insertInvitation, listBinned, listInvitations, listMembers, lockOwners, renameStudio, revokeInvitation, unbinStudio, updateRole, updateSettings,
 } from './studio.queries.ts';
 
 const INVITATION_DAYS = 7;
@@ -54,6 +54,14 @@ export function createStudioService({ db, events, config }: Pick<Deps, 'db' | 'e
         await recordAudit(tx, { studioId: id, ...actor, action: 'studio.deleted', about: studio.name });
       });
     },
+
+    deletedOf: (personId: string): Promise<{ id: string; name: string; deletedAt: string }[]> => listBinned(db, personId),
+    restore: (id: string, actor: Actor): Promise<Studio> =>
+      db.transaction(async (tx) => {
+        await unbinStudio(tx, id);
+        await recordAudit(tx, { studioId: id, ...actor, action: 'studio.restored' });
+        return (await findStudio(tx, id, 'owner'))!;
+      }),
 
     settings: (studioId: string): Promise<StudioSettings> => findSettings(db, studioId),
     async changeSettings(studioId: string, { version, ...change }: Partial<StudioSettings> & { version: number }): Promise<StudioSettings> {
