@@ -29,10 +29,17 @@ export function bestPattern(widthMm: number, heightMm: number, parts: readonly P
     const key = `${w.toFixed(3)} ${h.toFixed(3)}`;
     const before = known.get(key);
     if (before) return before;
-    let best: Found = { worth: 0, cuts: 0, tree: { kind: 'left' } };
+    let best: Found = NOTHING;
     const offer = (found: Found) => {
       if (found.worth > best.worth + 1e-9 || (found.worth > best.worth - 1e-9 && found.cuts < best.cuts)) best = found;
     };
+    const fullW = lastUpTo(xs, w), fullH = lastUpTo(ys, h);
+    if (fullW < w - SAME_MM || fullH < h - SAME_MM) {
+      // What no sum of sizes reaches is cut off first; then halves may be swapped.
+      if (fullW > 0 && fullH > 0) best = fullW < w - SAME_MM ? joined('x', fullW, solve(fullW, h), NOTHING) : joined('y', fullH, solve(w, fullH), NOTHING);
+      known.set(key, best);
+      return best;
+    }
     for (const part of parts) if (same(part.widthMm, w) && same(part.heightMm, h)) offer({ worth: part.worth, cuts: 0, tree: { kind: 'part', index: part.index } });
     for (const at of xs) if (at > SAME_MM && at <= w / 2 + SAME_MM) offer(joined('x', at, solve(at, h), solve(w - at, h)));
     for (const at of ys) if (at > SAME_MM && at <= h / 2 + SAME_MM) offer(joined('y', at, solve(w, at), solve(w, h - at)));
@@ -42,6 +49,15 @@ export function bestPattern(widthMm: number, heightMm: number, parts: readonly P
   if (parts.length === 0) return { tree: { kind: 'left' }, worth: 0 };
   const { tree, worth } = solve(widthMm, heightMm);
   return { tree, worth };
+}
+
+const NOTHING: Found = { worth: 0, cuts: 0, tree: { kind: 'left' } };
+
+/** Largest of the sorted sums that is no more than the length; 0 where none is. */
+function lastUpTo(all: readonly number[], length: number): number {
+  let last = 0;
+  for (const sum of all) if (sum <= length + SAME_MM) last = sum;
+  return last;
 }
 
 function joined(axis: 'x' | 'y', atMm: number, a: Found, b: Found): Found {
