@@ -4,10 +4,12 @@
  * Input: RGBA pixels and the region that is read; not mutated. Output: a coarse grid of paper colours, to be interpolated between the tiles' middles, and
  * whether ink is darker than paper. Cost: a fixed number of samples per tile, a few passes over the grid.
  *
- * The paper is what most of a tile shows on its bright side (on its dark side for white ink on dark card). A tile that is all ink
- * stands out from the tiles round it and takes its colour from them. A picture with nothing but one colour is all paper.
+ * The paper is what most of a tile shows on its bright side (on its dark side for white ink on dark card). Tiles that are even in themselves and go
+ * over into one another gently are the paper, in light and in shadow; solid ink begins at once and is not reached. Other tiles count
+ * where they agree with the paper round them, else they take its colour. A picture of nothing but one colour is all paper.
  */
 import type { Pixels } from './decode.ts';
+import { DisjointSets } from './gaps.ts';
 import type { Region } from './region.ts';
 
 export interface PaperGrid {
@@ -26,13 +28,19 @@ const MIN_TILE_PX = 8;
 const SAMPLES_ALONG = 10;
 /** Share of a tile's samples, from the ink's side, after which paper is taken to begin, and where it ends. */
 const PAPER_FROM = 0.55, PAPER_TO = 0.9;
-/** Reach of the look round each tile, in tiles: about 20 mm to either side on a letter sheet. */
-const NEIGHBOURHOOD = 8;
-/** In a neighbourhood's order of brightness the paper stands here: solid ink may cover up to two thirds of it. */
-const NEIGHBOURHOOD_RANK = 0.7;
-/** A tile off the paper round it by more than this share is ink, not shade. */
+/** A tile whose samples spread by more than this share of its brightness, and by this many times the usual, has ink or an edge in it. */
+const EVEN_SHARE = 0.06, EVEN_TIMES = 2.2;
+/** Even tiles this near (in tiles) and this much alike are one surface: light falls off gently, ink begins at once. */
+const SURFACE_REACH = 2, SURFACE_STEP = 0.06;
+/** A surface other than the largest is paper too, in a hard shadow, from this share of all tiles on; solid ink is smaller. */
+const SECOND_PAPER = 0.2;
+/** Of a sheet all covered with type so few tiles are even that every tile must speak for itself. */
+const LEAST_EVEN = 0.04;
+/** A tile with ink in it off the paper round it by more than this share is mostly ink. */
 const TILE_IS_INK = 0.1;
 const SMOOTHING_TILES = 2;
+/** Differences below this brightness count from it: of the dark a sensor tells little. */
+const DARK = 40;
 /** Black card still reflects; keeps quotients finite. */
 const MIN_LEVEL = 6;
 
@@ -56,9 +64,9 @@ export function estimatePaper(pixels: Pixels, region: Region): PaperGrid {
     }
   }
   const inkIsDarker = darkTail >= lightTail;
-  const raw = new Float32Array(3 * columns * rows);
+  const raw = new Float32Array(3 * columns * rows), spread = Float32Array.from(samples, relativeSpread);
   samples.forEach((sorted, tile) => { if (sorted.length > 0) meanColour(sorted, inkIsDarker, raw, 3 * tile); });
-  return { tilePx, columns, rows, colours: levelOutInk(raw, columns, rows, inkIsDarker), inkIsDarker };
+  return { tilePx, columns, rows, colours: levelOutInk(raw, spread, columns, rows), inkIsDarker };
 }
 
 /** Samples as luminance, red, green, blue, in ascending order of luminance; none for a tile outside the region. */
@@ -90,25 +98,51 @@ function meanColour(sorted: Float32Array, inkIsDarker: boolean, into: Float32Arr
   }
 }
 
-function levelOutInk(raw: Float32Array, columns: number, rows: number, inkIsDarker: boolean): Float32Array {
+/** Of all but a tenth of a tile's samples, as a share of their middle; none for a tile outside the region. */
+function relativeSpread(sorted: Float32Array): number {
+  const n = sorted.length / 4, at = (share: number) => sorted[4 * Math.min(n - 1, Math.floor(share * n))];
+  return n === 0 ? Infinity : (at(0.95) - at(0.05)) / Math.max(at(0.5), DARK);
+}
+
+/** Even tiles that go over into one another are paper; tiles with ink count where they agree with the paper round them. */
+function levelOutInk(raw: Float32Array, spread: Float32Array, columns: number, rows: number): Float32Array {
   const level = new Float32Array(columns * rows);
   for (let i = 0; i < level.length; i++) level[i] = luminance(raw[3 * i], raw[3 * i + 1], raw[3 * i + 2]);
   const weight = new Float32Array(columns * rows);
-  const near: number[] = [];
-  for (let row = 0; row < rows; row++) {
-    for (let column = 0; column < columns; column++) {
-      near.length = 0;
-      for (let r = Math.max(0, row - NEIGHBOURHOOD); r <= Math.min(rows - 1, row + NEIGHBOURHOOD); r += 2) {
-        for (let c = Math.max(0, column - NEIGHBOURHOOD); c <= Math.min(columns - 1, column + NEIGHBOURHOOD); c += 2) if (level[r * columns + c] > 0) near.push(level[r * columns + c]);
-      }
-      near.sort((a, b) => (inkIsDarker ? a - b : b - a));
-      const expected = near[Math.min(near.length - 1, Math.floor(NEIGHBOURHOOD_RANK * near.length))];
-      const off = inkIsDarker ? expected - level[row * columns + column] : level[row * columns + column] - expected;
-      const own = level[row * columns + column];
-      weight[row * columns + column] = own === 0 ? 0 : off > TILE_IS_INK * Math.max(expected, 40) ? 1e-6 : 1;
-    }
+  const paper = paperTiles(level, spread, columns, rows);
+  if (!paper) return smooth(raw, level.map((l) => (l > 0 ? 1 : 0)), columns, rows);
+  for (const i of paper) weight[i] = 1;
+  const first = smooth(raw, weight, columns, rows);
+  for (let i = 0; i < level.length; i++) {
+    const expected = luminance(first[3 * i], first[3 * i + 1], first[3 * i + 2]);
+    if (level[i] > 0 && weight[i] === 0 && Math.abs(level[i] - expected) < TILE_IS_INK * Math.max(expected, DARK)) weight[i] = 1;
   }
   return smooth(raw, weight, columns, rows);
+}
+
+/** Null where too few tiles are even to tell. */
+function paperTiles(level: Float32Array, spread: Float32Array, columns: number, rows: number): number[] | null {
+  const known = spread.filter((s) => s < Infinity).sort();
+  const limit = Math.max(EVEN_SHARE, EVEN_TIMES * (known[known.length >> 1] ?? 0));
+  const sets = new DisjointSets(level.length);
+  const alike = (i: number, j: number) => spread[i] <= limit && spread[j] <= limit && Math.abs(level[i] - level[j]) < SURFACE_STEP * Math.max(level[i], level[j], DARK);
+  for (let row = 0, i = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++, i++) {
+      for (let d = 1; d <= SURFACE_REACH; d++) {
+        if (column >= d && alike(i, i - d)) sets.join(i, i - d);
+        if (row >= d && alike(i, i - d * columns)) sets.join(i, i - d * columns);
+      }
+    }
+  }
+  const surfaces = new Map<number, number[]>();
+  spread.forEach((s, i) => {
+    if (s > limit) return;
+    const leader = sets.find(i), tiles = surfaces.get(leader);
+    if (tiles) tiles.push(i); else surfaces.set(leader, [i]);
+  });
+  const [largest, ...others] = [...surfaces.values()].sort((a, b) => b.length - a.length);
+  if (!largest || largest.length < LEAST_EVEN * known.length) return null;
+  return [...largest, ...others.filter((tiles) => tiles.length > SECOND_PAPER * known.length).flat()];
 }
 
 /** Mean of the neighbours that count, over a window that is doubled where none does. */
