@@ -4,7 +4,7 @@
  */
 import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
-import { parse } from 'opentype.js';
+import opentype from 'opentype.js';
 import { DIE_SHAPES, startingShape } from '../../server/engine/fit/die-shapes.ts';
 import type { DieGeometry, DieShape } from '../../server/engine/fit/index.ts';
 import type { Outline, Point, Ring } from '../../server/engine/geometry/types.ts';
@@ -20,7 +20,7 @@ export function sentiments(count: number, points = 500): Outline[] {
 
 export function sentiment(words: string, font: string, widthMm: number, points: number): Outline {
   const file = readFileSync(resolve(`@fontsource/${font}/files/${font}-latin-400-normal.woff`));
-  const loaded = parse(file.buffer.slice(file.byteOffset, file.byteOffset + file.byteLength) as ArrayBuffer);
+  const loaded = opentype.parse(file.buffer.slice(file.byteOffset, file.byteOffset + file.byteLength) as ArrayBuffer);
   // Letter by letter: shaping is of no interest here, and not every font's tables can be read.
   let pen = 0;
   const commands = [...words].flatMap((letter) => {

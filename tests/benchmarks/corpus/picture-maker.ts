@@ -182,15 +182,31 @@ export async function toPng(raster: Raster): Promise<Uint8Array> {
   return new Jimp({ width: raster.width, height: raster.height, data: Buffer.from(raster.rgba) }).getBuffer('image/png', { deflateLevel: 1 });
 }
 
-let jpegEncoder: Promise<(data: { data: Uint8ClampedArray; width: number; height: number }, options: { quality: number }) => Promise<ArrayBuffer>> | null = null;
+type Encode = (data: { data: Uint8ClampedArray; width: number; height: number }, options: { quality: number }) => Promise<ArrayBuffer>;
+const encoders = new Map<string, Promise<Encode>>();
+const codecs = {
+  jpeg: { load: () => import('@jsquash/jpeg/encode.js'), wasm: '@jsquash/jpeg/codec/enc/mozjpeg_enc.wasm' },
+  webp: { load: () => import('@jsquash/webp/encode.js'), wasm: '@jsquash/webp/codec/enc/webp_enc_simd.wasm' },
+};
 
-export async function toJpeg(raster: Raster, quality: number): Promise<Uint8Array> {
-  jpegEncoder ??= (async () => {
-    const codec = await import('@jsquash/jpeg/encode.js');
-    const wasm = readFileSync(createRequire(import.meta.url).resolve('@jsquash/jpeg/codec/enc/mozjpeg_enc.wasm'));
-    await codec.init((await WebAssembly.compile(wasm)) as never);
-    return codec.default as never;
-  })();
-  const encode = await jpegEncoder;
-  return new Uint8Array(await encode({ data: new Uint8ClampedArray(raster.rgba.buffer, raster.rgba.byteOffset, raster.rgba.byteLength), width: raster.width, height: raster.height }, { quality }));
+async function encodeBy(kind: keyof typeof codecs, raster: Raster, quality: number): Promise<Uint8Array> {
+  let encoder = encoders.get(kind);
+  if (!encoder) {
+    encoders.set(kind, (encoder = (async () => {
+      const codec = await codecs[kind].load();
+      const bytes = readFileSync(createRequire(import.meta.url).resolve(codecs[kind].wasm));
+      await codec.init((await WebAssembly.compile(bytes)) as never);
+      return codec.default as never;
+    })()));
+  }
+  const { rgba, width, height } = raster;
+  return new Uint8Array(await (await encoder)({ data: new Uint8ClampedArray(rgba.buffer, rgba.byteOffset, rgba.byteLength), width, height }, { quality }));
+}
+
+export function toJpeg(raster: Raster, quality: number): Promise<Uint8Array> {
+  return encodeBy('jpeg', raster, quality);
+}
+
+export function toWebp(raster: Raster, quality: number): Promise<Uint8Array> {
+  return encodeBy('webp', raster, quality);
 }
