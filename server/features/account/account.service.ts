@@ -25,7 +25,7 @@ const TOO_OFTEN = 'Too many tries to sign in.';
 
 export type AccountService = ReturnType<typeof createAccountService>;
 
-export function createAccountService({ db, engine }: Pick<Deps, 'db' | 'engine'>) {
+export function createAccountService({ db, engine, events }: Pick<Deps, 'db' | 'engine' | 'events'>) {
   const byAccountHere = createLimiter(db, 'sign-in-here', LIMITS.accountHere.points, LIMITS.accountHere.seconds);
   const byAccount = createLimiter(db, 'sign-in', LIMITS.account.points, LIMITS.account.seconds);
   const byAddress = createLimiter(db, 'sign-in-from', LIMITS.address.points, LIMITS.address.seconds);
@@ -57,6 +57,7 @@ export function createAccountService({ db, engine }: Pick<Deps, 'db' | 'engine'>
     await insertMembership(tx, invitation.studioId, personId, invitation.role);
     await markAccepted(tx, invitation.id, personId);
     await recordAudit(tx, { studioId: invitation.studioId, personId, action: 'invitation.accepted', details: { role: invitation.role }, address });
+    await events.publish(tx, invitation.studioId, { type: 'changed', noun: 'members', id: personId });
     return { id: invitation.studioId, name: invitation.studioName, role: invitation.role };
   }
 
