@@ -19,6 +19,13 @@ const FEW = 6;
 
 export const SEARCH_KINDS: readonly SearchKind[] = [
   {
+    title: 'Batches', noun: 'batches', list: 'batches',
+    find: async (studioId, search) => {
+      const { items, total } = await call('GET /studios/:studioId/batches', { params: { studioId }, query: { search, limit: FEW } });
+      return { total, hits: items.map((batch) => ({ id: batch.id, title: batch.name, about: `${batch.cards.toLocaleString()} cards`, to: { name: 'batch', params: { studioId, batchId: batch.id } } })) };
+    },
+  },
+  {
     title: 'Stamp sets', noun: 'stamp-sets', list: 'stamp-sets',
     find: async (studioId, search) => {
       const { items, total } = await call('GET /studios/:studioId/stamp-sets', { params: { studioId }, query: { search, limit: FEW } });
@@ -33,6 +40,13 @@ export const SEARCH_KINDS: readonly SearchKind[] = [
         total,
         hits: items.map((s) => ({ id: s.id, title: s.title, about: [s.widthMm !== null && s.heightMm !== null ? length.showSize(s.widthMm, s.heightMm) : 'no size yet', s.stampSetName].join(' · '), to: { name: 'stamp-set', params: { studioId, stampSetId: s.stampSetId } } })),
       };
+    },
+  },
+  {
+    title: 'Die sets', noun: 'die-sets', list: 'dies',
+    find: async (studioId, search) => {
+      const { items, total } = await call('GET /studios/:studioId/die-sets', { params: { studioId }, query: { search, limit: FEW } });
+      return { total, hits: items.map((set) => ({ id: set.id, title: set.name, about: set.dies.length === 1 ? '1 die' : `${set.dies.length} dies`, to: { name: 'dies', params: { studioId }, query: { search: set.name } } })) };
     },
   },
   {
