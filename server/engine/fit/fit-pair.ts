@@ -10,7 +10,12 @@ import { tiltedFit, type FitAt } from './tilted-fit.ts';
 import type { Fit, FitOptions } from './types.ts';
 
 /** A place with what is proven about it. */
-export interface ProvenPlace extends Place { bound: number; artwork: TurnedArtwork }
+export interface ProvenPlace extends Place {
+  bound: number;
+  artwork: TurnedArtwork;
+  /** Looked at by the search; none where the programme answered. */
+  squares?: number;
+}
 
 /** A later turn must be better by more than this to win: below it the difference is rounding. */
 const BETTER_TURN_CONVEX_MM = 1e-9;
