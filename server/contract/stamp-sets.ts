@@ -64,7 +64,7 @@ export const Picture = z.object({
   jobId: Id.nullable(),
   /** Changes with the picture itself; part of the image's address, so that browsers may keep it. Null until it can be shown. */
   imageKey: z.string().nullable(),
-  /** Text recognition reads better flipped: shown as a proposal. */
+  /** Its words read better the other way round than it is read now: shown as a proposal. */
   looksMirrored: z.boolean(),
   version: Version,
   updatedAt: Instant,

@@ -14,12 +14,7 @@ const all = {
   bcryptCompare: async (input: { digest: string; hash: string }) => (await import('bcryptjs')).compareSync(input.digest, input.hash),
   readStampSheet: async (input: { file: Uint8Array; options: ReadOptions }, control) => (await import('../engine/reading/index.ts')).readStampSheet(input.file, input.options, control),
   groupSentiments: async (input: { base: Reading; wishes: Wishes }) => (await import('../features/stamp-sets/sentiment-follow.ts')).groupSentiments(input),
-  // Read the wrong way round is read the wrong way round, whichever way the picture was taken to be.
-  recogniseWords: async (input: { reading: Reading; options: { mirrored: boolean } }, control) => {
-    const { occasionTags, recogniseWords } = await import('../engine/reading/index.ts');
-    const { sentiments, readsBetterFlipped } = await recogniseWords(input.reading, control);
-    return { words: sentiments.map(({ text }) => ({ text, tags: occasionTags(text) })), looksMirrored: readsBetterFlipped !== input.options.mirrored };
-  },
+  recogniseSentiments: async (input: { base: Reading; wishes: Wishes }, control) => (await import('../features/stamp-sets/recognise-sentiments.ts')).recogniseSentiments(input, control),
   pictureViews: async (input: { file: Uint8Array }) => (await import('../features/stamp-sets/picture-views.ts')).pictureViews(input),
   fitTable: async (input: { artworks: Outline[]; dies: DieGeometry[]; options?: FitOptions }) => (await import('../engine/fit/index.ts')).fitTable(input.artworks, input.dies, input.options),
   planGangRun: async (input: { order: RunOrder }, control) => (await import('../engine/gangrun/index.ts')).planGangRun(input.order, control),

@@ -128,6 +128,27 @@ describe('a stamp set from a scan', () => {
   }, 90_000);
 });
 
+describe('words', () => {
+  it('are proposed after a reading with their occasions, never over what a person wrote, and tell a picture of the stamps\' faces', async () => {
+    const set = await readSet(drawSheet(WORDS, { ...PAGE, mirrored: true }).png, { mirrored: 'true' });
+    // The reading itself queued the recognition; asking again meets the same job.
+    const [first] = byPlace(set.sentiments);
+    await maker.patch(`/studios/:studioId/sentiments/${first.id}`, { version: first.version, words: 'my own words' }).expect(200);
+    const { body } = await maker.post(`${SETS}/${set.id}/pictures/${set.pictures[0].id}/words`).expect(202);
+    expect((await kit.jobEnded(maker, body.jobId, 90_000)).error).toBeNull();
+    const after: StampSet = (await maker.get(`${SETS}/${set.id}`)).body;
+    const found = byPlace(after.sentiments);
+    expect(found[0]).toMatchObject({ words: 'my own words', wordsBy: 'person' });
+    expect(found[2]).toMatchObject({ words: expect.stringMatching(/with love/i), wordsBy: 'recognised', tags: expect.arrayContaining(['love']), title: expect.stringMatching(/with love/i) });
+    expect(after.pictures[0].looksMirrored).toBe(false);
+
+    const unflipped = await readSet(drawSheet(WORDS, { ...PAGE, mirrored: true }).png);
+    const again = await maker.post(`${SETS}/${unflipped.id}/pictures/${unflipped.pictures[0].id}/words`).expect(202);
+    await kit.jobEnded(maker, again.body.jobId, 90_000);
+    expect((await maker.get(`${SETS}/${unflipped.id}`)).body.pictures[0].looksMirrored).toBe(true);
+  }, 200_000);
+});
+
 function nearInk(sentiment: Sentiment, picture: Picture) {
   return middle(picture, sentiment);
 }

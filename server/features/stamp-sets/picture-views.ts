@@ -3,12 +3,13 @@
  * worker thread.
  *
  * Input: the file as sent. Output: two JPEG files. Pixels are averaged over the area that each new one covers, so hairlines
- * grow pale instead of vanishing. Memory: 4 bytes a pixel of the file; the rest is small. Orientation: CIPA DC-008 (Exif 2.32) §4.6.4.
+ * grow pale instead of vanishing. Memory: 4 bytes a pixel of the file; the rest is small.
  */
 import { readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
 import { decodePicture } from '../../engine/reading/decode.ts';
 import type { Pixels } from '../../engine/reading/decode.ts';
+import { uprightPlace, uprightSize } from '../../engine/reading/orientation.ts';
 import { probePicture } from '../../engine/reading/probe.ts';
 
 /** Enough to see where a letter ends when zoomed in; a third of a megabyte or so. */
@@ -22,7 +23,7 @@ export async function pictureViews(input: { file: Uint8Array }): Promise<{ view:
 }
 
 /** Area average down to the given longer side; the picture itself where it is no larger. */
-export function shrink(picture: Pixels, sidePx: number): Pixels {
+function shrink(picture: Pixels, sidePx: number): Pixels {
   const factor = Math.max(picture.width, picture.height) / sidePx;
   if (factor <= 1) return picture;
   const width = Math.max(1, Math.round(picture.width / factor)), height = Math.max(1, Math.round(picture.height / factor));
@@ -50,19 +51,18 @@ export function shrink(picture: Pixels, sidePx: number): Pixels {
   return { width, height, rgba };
 }
 
-/** Orientation n of Exif: where the stored picture's first row and column belong. */
-export function turnUpright(stored: Pixels, orientation: number): Pixels {
-  if (orientation <= 1 || orientation > 8) return stored;
-  const { width: w, height: h } = stored;
-  const turned = orientation >= 5;
-  const width = turned ? h : w, height = turned ? w : h;
-  const from = new Uint32Array(stored.rgba.buffer, stored.rgba.byteOffset, w * h), to = new Uint32Array(w * h);
-  // Whence the upright pixel (x, y) comes in the stored picture.
-  const source: Record<number, (x: number, y: number) => number> = {
-    2: (x, y) => y * w + (w - 1 - x), 3: (x, y) => (h - 1 - y) * w + (w - 1 - x), 4: (x, y) => (h - 1 - y) * w + x,
-    5: (x, y) => x * w + y, 6: (x, y) => (h - 1 - x) * w + y, 7: (x, y) => (h - 1 - x) * w + (w - 1 - y), 8: (x, y) => x * w + (w - 1 - y),
-  };
-  for (let y = 0; y < height; y++) for (let x = 0; x < width; x++) to[y * width + x] = from[source[orientation](x, y)];
+/** As the reading turns it, so that what is drawn over the picture lies where it was read. */
+function turnUpright(stored: Pixels, orientation: number): Pixels {
+  if (orientation === 1) return stored;
+  const turning = { width: stored.width, height: stored.height, orientation, mirrored: false };
+  const { width, height } = uprightSize(turning);
+  const from = new Uint32Array(stored.rgba.buffer, stored.rgba.byteOffset, width * height), to = new Uint32Array(width * height);
+  for (let y = 0, i = 0; y < stored.height; y++) {
+    for (let x = 0; x < stored.width; x++) {
+      const at = uprightPlace(turning, { x: x + 0.5, y: y + 0.5 });
+      to[Math.floor(at.y) * width + Math.floor(at.x)] = from[i++];
+    }
+  }
   return { width, height, rgba: new Uint8Array(to.buffer) };
 }
 

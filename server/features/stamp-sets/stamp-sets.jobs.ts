@@ -7,11 +7,11 @@ import type { JobDefinition } from '../../jobs/types.ts';
 import { followPicture, wishesOf } from './follow-picture.ts';
 import { lockPicture, readPicture, updatePicture } from './pictures.queries.ts';
 import type { ReadPictureRow } from './pictures.queries.ts';
-import { correctedReading, fittingCorrections, groupSentiments, placeOf } from './sentiment-follow.ts';
+import { fittingCorrections, groupSentiments } from './sentiment-follow.ts';
 import type { GroupedSentiments, Wishes } from './sentiment-follow.ts';
 import { storedReading } from './stored-reading.ts';
 import { saveWords } from './stamp-words.ts';
-import type { RecognisedWords } from './stamp-words.ts';
+import type { RecognisedSentiments } from './stamp-words.ts';
 
 const ReadPayload = z.object({ pictureId: z.uuid(), stampSetId: z.uuid(), fileKey: z.string(), mirrored: z.boolean(), sheet: Scale.nullable() });
 const WordsPayload = z.object({ pictureId: z.uuid(), stampSetId: z.uuid(), fileKey: z.string() });
@@ -106,7 +106,7 @@ export function readPictureJob({ db, files, jobs, events }: Deps): JobDefinition
   };
 }
 
-export function recogniseWordsJob({ db, files, events }: Deps): JobDefinition<WordsPayload, RecognisedWords> {
+export function recogniseWordsJob({ db, events }: Deps): JobDefinition<WordsPayload, RecognisedSentiments> {
   return {
     ...RECOGNISE_WORDS,
     payload: WordsPayload,
@@ -116,11 +116,7 @@ export function recogniseWordsJob({ db, files, events }: Deps): JobDefinition<Wo
       const stored = await readPicture(db, { studioId, pictureId: payload.pictureId });
       if (!stored?.reading || stored.file_key !== payload.fileKey) return { sentiments: [], looksMirrored: false };
       onProgress(0, 'Reading the words');
-      const reading = correctedReading(stored.reading, wishesOf(stored));
-      const { words, looksMirrored } = await engine.run<{ words: { text: string; tags: string[] }[]; looksMirrored: boolean }>(
-        'recogniseWords', { file: await files.get(payload.fileKey), reading, options: { mirrored: stored.mirrored } },
-      );
-      return { sentiments: reading.sentiments.map((sentiment, i) => ({ place: placeOf(sentiment.boxPx, reading), ...words[i] })), looksMirrored };
+      return engine.run<RecognisedSentiments>('recogniseSentiments', { base: stored.reading, wishes: wishesOf(stored) });
     },
 
     async save(tx, payload, output, { studioId }) {
