@@ -1,7 +1,7 @@
 /** How the run sheets of a plan are cut from the cardstock on hand. */
 import type { StockCutting } from '../../contract/plans.ts';
 import type { CutPart, CutPlan } from '../../engine/cutplan/types.ts';
-import { AppError, notFound } from '../../errors/app-error.ts';
+import { notFound } from '../../errors/app-error.ts';
 import type { Deps } from '../../feature.ts';
 import { gearByIds } from '../gear/gear.queries.ts';
 import { cardstocks } from '../gear/gear-kinds.ts';
@@ -22,16 +22,20 @@ export function createStockService({ db, engine }: Pick<Deps, 'db' | 'engine'>) 
         const parts: CutPart[] = [{ id: 'run sheet', widthMm, heightMm, quantity, keepDirection: false }];
         const cardstock = { id: stock.id, name: stock.name, colour: stock.colour, widthMm: stock.widthMm, heightMm: stock.heightMm, onHand: stock.onHand };
         const pieces = [{ what: 'Run sheet', widthMm, heightMm, quantity }];
-        try {
-          const cutPlan = await engine.run<CutPlan>('planCuts', { parts, stock: { widthMm: stock.widthMm, heightMm: stock.heightMm } });
-          items.push({ cardstock, pieces, cutPlan, problem: null });
-        } catch (error) {
-          // A run sheet larger than the stock is nothing that went wrong: it is told beside the others.
-          if (!(error instanceof AppError) || error.status >= 500) throw error;
-          items.push({ cardstock, pieces, cutPlan: null, problem: error.message });
-        }
+        const cutPlan = comesOutOf(stock, run.order.sheet) ? await engine.run<CutPlan>('planCuts', { parts, stock: { widthMm: stock.widthMm, heightMm: stock.heightMm } }) : null;
+        items.push({ cardstock, pieces, cutPlan, problem: cutPlan ? null : 'The run sheet is larger than a sheet of this cardstock. Choose a smaller run sheet or another cardstock.' });
       }
       return { items };
     },
   };
+}
+
+/** Rounding of sizes in inches, mm. */
+const ROUNDING_MM = 1e-6;
+interface Size { widthMm: number; heightMm: number }
+
+/** Either way round. */
+function comesOutOf(stock: Size, sheet: Size): boolean {
+  const [a, b] = [stock, sheet].map(({ widthMm, heightMm }) => [widthMm, heightMm].sort((p, q) => p - q));
+  return b[0] <= a[0] + ROUNDING_MM && b[1] <= a[1] + ROUNDING_MM;
 }
