@@ -52,8 +52,8 @@ async function main() {
   ensurePackages(checkout);
   cluster = await startCluster({ throwAway: true });
   const env = { ...process.env, TEST_DATABASE_URL: cluster.url, CHROMIUM: findChromium(), ...(long ? { LONG: '1' } : {}) };
-  // Colours and watch modes are for people at a terminal; the last line is for programs.
   delete env.NODE_ENV;
+  if (!process.stdout.isTTY) env.NO_COLOR = '1';
 
   const total = { passed: 0, failed: 0 };
   for (const step of STEPS) {
