@@ -1,6 +1,6 @@
 /**
  * Picture file → pixels. JPEG and WebP by the codecs of the jSquash packages (WebAssembly, taken from disk), about five times as fast as
- * decoders written in JavaScript; all others, and JPEGs in inks (CMYK), by Jimp.
+ * decoders written in JavaScript; the usual PNGs by decode-png.ts; all others, and JPEGs in inks (CMYK), by Jimp.
  *
  * Input: the file and its header as `probePicture` told it, so that sizes are known to be bearable. Output: RGBA as stored, not yet turned
  * upright, transparent pixels laid on white paper. Throws ReadingError `damaged` where the file cannot be decoded or breaks off.
@@ -9,6 +9,7 @@
  */
 import { readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
+import { decodePng } from './decode-png.ts';
 import type { PictureHeader } from './probe.ts';
 import { damaged } from './reading-error.ts';
 
@@ -38,7 +39,7 @@ export async function decodePicture(file: Uint8Array, header: PictureHeader): Pr
   try {
     if (header.type === 'jpeg') pixels = await decodeJpeg(file, header);
     else if (header.type === 'webp') pixels = await decodeByCodec('webp', file, header);
-    else pixels = await decodeByJimp(file);
+    else pixels = (header.type === 'png' && decodePng(file)) || (await decodeByJimp(file));
   } catch (error) {
     // Decoders throw errors of all kinds, and WebAssembly ones even numbers.
     throw damaged(error);

@@ -1,7 +1,7 @@
 /**
  * The photo page's markers in a photograph: where they are, and the map from the picture to the page in mm that follows.
  *
- * Input: brightness of the upright, unflipped picture, one byte a pixel; not mutated. Output: a homography from picture px to mm, origin at the top
+ * Input: brightness of the upright, unflipped picture; not mutated. Output: a homography from picture px to mm, origin at the top
  * left of the page's room, and that room's corners in the picture; null where fewer than LEAST_MARKERS of the layout are seen or their
  * places contradict each other. OpenCV's aruco detector finds the markers in a reduced picture; their sides are then fitted anew at full
  * size, each from many crossings half way between black and white, and corners are where sides meet. Cost: one detection in at most DETECT_SIDE_PX.
@@ -12,7 +12,9 @@ import { fitLine, meetingPlace, type Line } from './line-fit.ts';
 import { loadOpenCv, type Cv } from './opencv.ts';
 import { markerCorners, PHOTO_PAGE_DICTIONARY, PHOTO_PAGE_MARKERS, PHOTO_PAGE_ROOM } from './photo-page-layout.ts';
 
-export interface Brightness { width: number; height: number; values: Uint8Array }
+/** From 0 to 255 at whole places within the picture: asked for where it is needed, since a second copy of a large picture is dear. */
+export interface Brightness { width: number; height: number; at: (x: number, y: number) => number }
+interface Reduced { width: number; height: number; values: Uint8Array }
 export interface PhotoPage { pxToMm: Homography; roomMm: { w: number; h: number }; roomPx: Point[]; markers: number }
 
 /** A marker of a page that fills half the picture still has 40 pixels along a side. */
@@ -61,8 +63,8 @@ function asSeen(pageMm: Homography, picture: Brightness, scale: { x: number; y: 
 }
 
 function detect(cv: Cv, picture: Brightness): Map<number, Point[]> {
-  const shrink = Math.max(1, Math.max(picture.width, picture.height) / DETECT_SIDE_PX);
-  const small = reduce(picture, Math.ceil(shrink)), factor = Math.ceil(shrink);
+  const factor = Math.ceil(Math.max(1, Math.max(picture.width, picture.height) / DETECT_SIDE_PX));
+  const small = reduce(picture, factor);
   const api = cv as unknown as ArucoApi;
   const image = new api.Mat(small.height, small.width, api.CV_8UC1);
   const corners = new api.MatVector(), ids = new api.Mat(), rejected = new api.MatVector();
@@ -99,18 +101,16 @@ interface ArucoApi {
   getPredefinedDictionary(name: number): Deletable;
 }
 
-/** Means over squares of `factor` pixels; the rest at the right and the bottom is left out. */
-export function reduce(picture: Brightness, factor: number): Brightness {
-  if (factor <= 1) return picture;
+/** Each reduced pixel from two by two places of its square of `factor` pixels; the rest at the right and the bottom is left out. */
+function reduce(picture: Brightness, factor: number): Reduced {
   const width = Math.floor(picture.width / factor), height = Math.floor(picture.height / factor);
-  const values = new Uint8Array(width * height), sums = new Uint32Array(width);
-  for (let y = 0; y < height; y++) {
-    sums.fill(0);
-    for (let r = 0; r < factor; r++) {
-      let at = (y * factor + r) * picture.width;
-      for (let x = 0; x < width; x++) for (let c = 0; c < factor; c++) sums[x] += picture.values[at++];
+  const values = new Uint8Array(width * height), near = factor >> 2, far = factor - 1 - near;
+  for (let y = 0, to = 0; y < height; y++) {
+    const top = y * factor + near, bottom = y * factor + far;
+    for (let x = 0; x < width; x++, to++) {
+      const left = x * factor + near, right = x * factor + far;
+      values[to] = (picture.at(left, top) + picture.at(right, top) + picture.at(left, bottom) + picture.at(right, bottom)) / 4 + 0.5;
     }
-    for (let x = 0; x < width; x++) values[y * width + x] = sums[x] / (factor * factor) + 0.5;
   }
   return { width, height, values };
 }
@@ -158,10 +158,10 @@ function crossingAlong(picture: Brightness, p: Point, nx: number, ny: number, re
 
 /** Between pixels' middles; the picture's edge goes on outwards. */
 function sample(picture: Brightness, x: number, y: number): number {
-  const { width, height, values } = picture;
+  const { width, height } = picture;
   const u = Math.min(width - 1.001, Math.max(0, x - 0.5)), v = Math.min(height - 1.001, Math.max(0, y - 0.5));
-  const i = Math.floor(u), j = Math.floor(v), f = u - i, g = v - j, at = j * width + i;
-  return (values[at] * (1 - f) + values[at + 1] * f) * (1 - g) + (values[at + width] * (1 - f) + values[at + width + 1] * f) * g;
+  const i = Math.floor(u), j = Math.floor(v), f = u - i, g = v - j;
+  return (picture.at(i, j) * (1 - f) + picture.at(i + 1, j) * f) * (1 - g) + (picture.at(i, j + 1) * (1 - f) + picture.at(i + 1, j + 1) * f) * g;
 }
 
 function distance(a: Point, b: Point): number {

@@ -12,7 +12,7 @@ import { findParts } from './find-parts.ts';
 import { NO_CORRECTIONS, regroup, withScale } from './grouping.ts';
 import { localScale, multiply, type Homography } from './homography.ts';
 import { mapInk, type InkMap } from './ink-map.ts';
-import { findPhotoPage } from './markers.ts';
+import { findPhotoPage, type Brightness } from './markers.ts';
 import { findSheet } from './find-sheet.ts';
 import { storedPlace, turnUpright, uprightPlace, uprightSize, type Turning } from './orientation.ts';
 import { estimatePaper, luminance } from './paper.ts';
@@ -93,7 +93,7 @@ async function findSurface(pixels: Pixels, turning: Turning, given: Scale | null
   }
   if (given) return { scale: given, polygon: null };
   const upright = { ...turning, mirrored: false }, size = uprightSize(upright);
-  const page = await findPhotoPage({ ...size, values: turnUpright(brightness(pixels), upright) }, options.photoPageScale ?? { x: 1, y: 1 });
+  const page = await findPhotoPage(brightness(pixels, upright), options.photoPageScale ?? { x: 1, y: 1 });
   if (!page) return { scale: fromFile, polygon: null };
   if (!turning.mirrored) return { scale: { pxToMm: page.pxToMm, source: 'photo-page' }, polygon: page.roomPx };
   // Seen in a mirror the markers are none: they are found before flipping, and picture and sheet are then flipped alike.
@@ -107,8 +107,11 @@ function insideEdge(corners: readonly Point[], pxToMm: Homography): Point[] {
   return insetPolygon(corners, SHEET_EDGE_MM / localScale(pxToMm, middle));
 }
 
-function brightness(pixels: Pixels): Uint8Array {
-  const values = new Uint8Array(pixels.width * pixels.height), { rgba } = pixels;
-  for (let i = 0, at = 0; i < values.length; i++, at += 4) values[i] = luminance(rgba[at], rgba[at + 1], rgba[at + 2]);
-  return values;
+function brightness({ rgba }: Pixels, turning: Turning): Brightness {
+  const index = (x: number, y: number) => { const p = storedPlace(turning, { x: x + 0.5, y: y + 0.5 }); return 4 * (Math.floor(p.y) * turning.width + Math.floor(p.x)); };
+  const first = index(0, 0), right = index(1, 0) - first, down = index(0, 1) - first;
+  return {
+    ...uprightSize(turning),
+    at: (x, y) => { const i = first + x * right + y * down; return luminance(rgba[i], rgba[i + 1], rgba[i + 2]); },
+  };
 }
