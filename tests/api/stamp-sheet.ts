@@ -6,6 +6,7 @@ import { Resvg } from '@resvg/resvg-js';
 import opentype from 'opentype.js';
 
 export interface SheetWords { words: string; /** Left end of the baseline, mm. */ x: number; y: number; sizeMm: number; font?: string }
+interface Box { x: number; y: number; w: number; h: number }
 export interface SheetOptions { widthMm: number; heightMm: number; dpi: number; /** Written into the file; default as drawn; null leaves it out. */ statedDpi?: number | null; mirrored?: boolean; grain?: number; ink?: string; paper?: string }
 
 const require = createRequire(import.meta.url);
@@ -38,7 +39,7 @@ const drawn = (command: opentype.PathCommand): string => (
 );
 
 /** The PNG, and the box of each word's ink in mm as the font's own outlines give it. */
-export function drawSheet(words: SheetWords[], options: SheetOptions): { png: Buffer; boxesMm: { x: number; y: number; w: number; h: number }[] } {
+export function drawSheet(words: SheetWords[], options: SheetOptions): { png: Buffer; boxesMm: Box[] } {
   const { widthMm, heightMm, dpi, ink = '#1b2233', paper = '#ffffff' } = options;
   const set = words.map(setWords);
   const mirror = options.mirrored ? `transform="translate(${widthMm} 0) scale(-1 1)"` : '';
@@ -49,6 +50,22 @@ export function drawSheet(words: SheetWords[], options: SheetOptions): { png: Bu
   const png = Buffer.from(new Resvg(svg, { fitTo: { mode: 'width', value: Math.round((widthMm / 25.4) * dpi) } }).render().asPng());
   const stated = options.statedDpi === undefined ? dpi : options.statedDpi;
   return { png: stated === null ? png : withDensity(png, stated), boxesMm: set.map(({ boxMm }) => boxMm) };
+}
+
+const DESK = { marginMm: 22, colour: '#6a5d50', turnDeg: 3.5, skewDeg: 2 };
+
+/** The same sheet lying askew on a darker desk, seen a little from the side; with the places of its corners, px, in the order in which they are asked for. */
+export function drawOnDesk(words: SheetWords[], options: SheetOptions): { png: Buffer; boxesMm: Box[]; cornersPx: { x: number; y: number }[] } {
+  const { widthMm: w, heightMm: h, dpi, ink = '#1b2233', paper = '#fdfcf8' } = options;
+  const set = words.map(setWords), m = DESK.marginMm, pxPerMm = dpi / 25.4;
+  const rad = Math.PI / 180, [sin, cos, tan] = [Math.sin(DESK.turnDeg * rad), Math.cos(DESK.turnDeg * rad), Math.tan(DESK.skewDeg * rad)];
+  // Turn after skew, about the sheet's middle; as SVG's matrix(a b c d e f).
+  const [a, b, c, d] = [cos, sin, cos * tan - sin, sin * tan + cos];
+  const [e, f] = [m + w / 2 - (a * w) / 2 - (c * h) / 2, m + h / 2 - (b * w) / 2 - (d * h) / 2];
+  const svg = `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${w + 2 * m} ${h + 2 * m}"><rect width="100%" height="100%" fill="${DESK.colour}"/><g transform="matrix(${a} ${b} ${c} ${d} ${e} ${f})"><rect width="${w}" height="${h}" fill="${paper}"/><g fill="${ink}">${set.map(({ data }) => `<path d="${data}"/>`).join('')}</g></g></svg>`;
+  const png = Buffer.from(new Resvg(svg, { fitTo: { mode: 'width', value: Math.round((w + 2 * m) * pxPerMm) } }).render().asPng());
+  const place = (x: number, y: number) => ({ x: (a * x + c * y + e) * pxPerMm, y: (b * x + d * y + f) * pxPerMm });
+  return { png, boxesMm: set.map(({ boxMm }) => boxMm), cornersPx: [place(0, 0), place(w, 0), place(w, h), place(0, h)] };
 }
 
 /** ISO/IEC 15948 §11.3.4.3: pHYs, dots per metre, after IHDR. */

@@ -2,7 +2,7 @@
 import axe from 'axe-core';
 import type { Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { drawSheet } from '../api/stamp-sheet.ts';
+import { drawOnDesk, drawSheet } from '../api/stamp-sheet.ts';
 import { openBrowserKit } from './kit.ts';
 import type { BrowserKit } from './kit.ts';
 
@@ -142,6 +142,46 @@ describe('a stamp set in the browser', () => {
     await page.getByRole('button', { name: /^Take .* back$/ }).first().click();
     await page.getByRole('heading', { name: '3 sentiments' }).waitFor();
     await saved(page);
+    await page.context().close();
+  });
+
+  it('measures a photographed sheet by its corners, dragged and read again, and keeps that over a reload', async () => {
+    const page = await kit.openAs('maker', 'stamp-sets/new');
+    const photo = drawOnDesk(WORDS, { ...SHEET, dpi: 220 });
+    await upload(page, photo.png, 'photo.png');
+    await page.getByRole('button', { name: 'Add and read it' }).click();
+    await page.getByRole('heading', { name: /^\d+ sentiments?$/ }).waitFor({ timeout: 60_000 });
+    await page.getByLabel('Sheet', { exact: true }).check({ force: true });
+    const box = (await picture(page).boundingBox())!;
+    const [w, h] = [(SHEET.widthMm + 44) * (220 / 25.4), (SHEET.heightMm + 44) * (220 / 25.4)];
+    const air = 0.02 * Math.max(w, h), scale = Math.min(box.width / (w + 2 * air), box.height / (h + 2 * air));
+    const onScreen = ({ x, y }: { x: number; y: number }): [number, number] => [box.x + box.width / 2 + (x - w / 2) * scale, box.y + box.height / 2 + (y - h / 2) * scale];
+    for (const [i, corner] of photo.cornersPx.entries()) {
+      const handle = (await page.locator('circle.handle').nth(i).boundingBox())!;
+      await page.mouse.move(handle.x + handle.width / 2, handle.y + handle.height / 2);
+      await page.mouse.down();
+      // Away and back, so that a corner which the program has found is dragged too.
+      await page.mouse.move(box.x + box.width / 2, box.y + box.height / 2, { steps: 3 });
+      await page.mouse.move(...onScreen(corner), { steps: 5 });
+      await page.mouse.up();
+    }
+    await page.getByLabel('Sheet width').fill(String(SHEET.widthMm));
+    await page.getByLabel('Sheet height').fill(String(SHEET.heightMm));
+    await page.getByRole('button', { name: 'Measure by this' }).click();
+    await saved(page);
+    await page.getByRole('button', { name: 'Read again within the sheet' }).click();
+    await page.getByText('The picture is being read again.').first().waitFor();
+    await page.getByRole('button', { name: 'Cancel the reading' }).waitFor({ state: 'detached', timeout: 60_000 });
+    await page.getByRole('heading', { name: '4 sentiments' }).waitFor({ timeout: 60_000 });
+    const measured = (await sizes(page)).map((text) => text.match(/([\d.]+) × ([\d.]+) mm/)!.slice(1).map(Number));
+    // A corner can be set to the nearest screen pixel, some 0.2 mm here; the goal for corners is 0.5 mm.
+    measured.forEach(([width, height], i) => {
+      expect(Math.abs(width - photo.boxesMm[i].w), WORDS[i].words).toBeLessThan(0.5);
+      expect(Math.abs(height - photo.boxesMm[i].h), WORDS[i].words).toBeLessThan(0.5);
+    });
+    await page.reload();
+    await page.getByText(/Measured at/).getByText(/by the corners of the sheet/).waitFor();
+    expect((await sizes(page)).map((text) => text.match(/([\d.]+) × ([\d.]+) mm/)!.slice(1).map(Number))).toEqual(measured);
     await page.context().close();
   });
 
