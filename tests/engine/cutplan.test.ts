@@ -73,6 +73,6 @@ describe('cutting parts from stock', () => {
     expect(plan.steps).toHaveLength(4);
     expect(() => planCuts([part(0, 40, 1)], LETTER)).toThrow(/no size/);
     expect(() => planCuts([part(10, 40, 1.5)], LETTER)).toThrow(/1.5 times/);
-    expect(planCuts([], LETTER)).toEqual({ sheets: 0, atLeastSheets: 0, steps: [], left: [] });
+    expect(planCuts([], LETTER)).toMatchObject({ sheets: 0, atLeastSheets: 0, steps: [], left: [] });
   });
 });

@@ -25,7 +25,7 @@ export function planCuts(parts: CutPart[], stock: { widthMm: number; heightMm: n
   const usable = { widthMm: stock.widthMm - 2 * trim, heightMm: stock.heightMm - 2 * trim };
   check(parts, stock, usable);
   const left = parts.map((part) => part.quantity);
-  const plan: CutPlan = { sheets: 0, atLeastSheets: sheetsAtLeast(parts, usable), steps: [], left: [] };
+  const plan: CutPlan = { sheets: 0, atLeastSheets: sheetsAtLeast(parts, usable), steps: [], left: [], stock: { widthMm: stock.widthMm, heightMm: stock.heightMm } };
   let last: { before: string; tree: CutTree } | null = null;
   while (left.some((n) => n > 0)) {
     plan.sheets++;
