@@ -5,7 +5,7 @@
  */
 import { spawn } from 'node:child_process';
 import { existsSync, readFileSync, rmSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { availableParallelism, tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { checkout, ensurePostgres, startCluster } from './cluster.mjs';
 import { hasProgram, installPackages, Refusal } from './debian.mjs';
@@ -76,7 +76,7 @@ async function runCommand(step, env) {
 async function runProjects(step, env) {
   const report = join(tmpdir(), `inkmuster-test-${process.pid}.json`);
   rmSync(report, { force: true });
-  const args = [join(checkout, 'node_modules/vitest/vitest.mjs'), 'run', '--passWithNoTests', ...step.projects.flatMap((name) => ['--project', name]), '--reporter=dot', '--reporter=json', `--outputFile.json=${report}`];
+  const args = [join(checkout, 'node_modules/vitest/vitest.mjs'), 'run', '--passWithNoTests', `--maxWorkers=${availableParallelism()}`, ...step.projects.flatMap((name) => ['--project', name]), '--reporter=dot', '--reporter=json', `--outputFile.json=${report}`];
   const code = await run([process.execPath, ...args], env);
   if (!existsSync(report)) return { passed: 0, failed: code === 0 ? 0 : 1 };
   const { numPassedTests: passed, numFailedTests: failed, numFailedTestSuites: suites } = JSON.parse(readFileSync(report, 'utf8'));
