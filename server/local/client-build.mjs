@@ -3,6 +3,7 @@ import { spawn } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { stripVTControlCharacters } from 'node:util';
 import { Refusal } from './debian.mjs';
 
 /** What ends up in the client: its own files, the contract and the kernels that it shares, the tools' settings and versions. */
@@ -14,10 +15,10 @@ export async function ensureClient(checkout) {
   if (existsSync(mark) && readFileSync(mark, 'utf8') === hash && existsSync(join(checkout, 'dist', 'client', 'index.html'))) return;
   console.log('Building the pages …');
   const said = [];
-  const build = spawn(process.execPath, [join(checkout, 'node_modules/vite/bin/vite.js'), 'build'], { cwd: checkout, stdio: ['ignore', 'pipe', 'pipe'], env: { ...process.env, NODE_ENV: 'production', NO_COLOR: '1' } });
+  const build = spawn(process.execPath, [join(checkout, 'node_modules/vite/bin/vite.js'), 'build'], { cwd: checkout, stdio: ['ignore', 'pipe', 'pipe'], env: { ...process.env, NODE_ENV: 'production' } });
   for (const stream of [build.stdout, build.stderr]) stream.on('data', (chunk) => said.push(chunk));
   const status = await new Promise((resolve) => build.once('close', resolve));
-  if (status !== 0) throw new Refusal(`The pages could not be built:\n${Buffer.concat(said).toString().trim().split('\n').filter((line) => !line.startsWith('    at ')).slice(-15).join('\n')}`);
+  if (status !== 0) throw new Refusal(`The pages could not be built:\n${stripVTControlCharacters(Buffer.concat(said).toString()).trim().split('\n').filter((line) => !line.startsWith('    at ')).slice(-15).join('\n')}`);
   writeFileSync(mark, hash);
 }
 

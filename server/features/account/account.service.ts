@@ -18,7 +18,8 @@ const LIMITS = {
   accountHere: { points: 10, seconds: 15 * MINUTES },
   account: { points: 100, seconds: 24 * HOURS },
   address: { points: 100, seconds: 15 * MINUTES },
-  registrations: { points: 20, seconds: HOURS },
+  // A whole class may register from behind one address.
+  registrations: { points: 60, seconds: HOURS },
 };
 const WRONG = () => new AppError(401, 'wrong-credentials', 'E-mail address and password do not belong together.');
 const TOO_OFTEN = 'Too many tries to sign in.';
