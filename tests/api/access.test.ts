@@ -102,6 +102,8 @@ describe('the description at /api/openapi.json', () => {
     const { body } = await kit.anonymous.get('/openapi.json').expect(200);
     const described = Object.entries(body.paths as Record<string, object>).flatMap(([path, operations]) => Object.keys(operations).map((method) => `${method.toUpperCase()} ${path.replace(/\{(\w+)\}/g, ':$1')}`));
     expect(described.sort()).toEqual(table.map(([key]) => key).sort());
+    // References that only hold within a schema of its own would lead nowhere in the whole.
+    expect(JSON.stringify(body).match(/"\$ref":"(?!#\/components\/schemas\/Problem")[^"]*"/g) ?? []).toEqual([]);
     for (const [key, route] of table) {
       const [method, path] = key.split(' ');
       const operation = body.paths[path.replace(/:(\w+)/g, '{$1}')][method.toLowerCase()];
