@@ -2,6 +2,7 @@
 import type { Knex } from 'knex';
 import type { AlternativeKind, Plan, planRoutes, PlanRun, PlanSummary, Unplaced } from '../../contract/plans.ts';
 import type { BodyOf } from '../../contract/route.ts';
+import type { RunTotals } from '../../engine/gangrun/types.ts';
 import { conflict, notFound } from '../../errors/app-error.ts';
 import type { Deps } from '../../feature.ts';
 import { gearByIds } from '../gear/gear.queries.ts';
@@ -93,9 +94,14 @@ function unplacedOf(run: StoredRun): Unplaced[] {
 
 /** Summed over the cardstocks; one that says the same as another is left out. */
 function alternativesOf(runs: readonly StoredRun[]): Plan['alternatives'] {
-  const now = JSON.stringify(sumTotals(runs.map((run) => run.plan.totals)));
+  const now = tellable(sumTotals(runs.map((run) => run.plan.totals)));
   const kinds = [...new Set(runs.flatMap((run) => run.alternatives.map(({ kind }) => kind)))];
   const all = kinds.map((kind) => ({ kind, totals: sumTotals(runs.map((run) => (run.alternatives.find((other) => other.kind === kind)?.plan ?? run.plan).totals)) }));
-  const distinct = all.filter(({ totals }, i) => all.findIndex((other) => JSON.stringify(other.totals) === JSON.stringify(totals)) === i);
-  return distinct.map((one) => ({ ...one, chosen: JSON.stringify(one.totals) === now }));
+  const distinct = all.filter(({ totals }, i) => all.findIndex((other) => tellable(other.totals) === tellable(totals)) === i);
+  return distinct.map((one) => ({ ...one, chosen: tellable(one.totals) === now }));
+}
+
+/** Two plans that differ in less than this are the same to whoever chooses. */
+function tellable({ setups, presses, sheets, cutPasses, minutes }: RunTotals): string {
+  return [setups, presses, sheets, cutPasses, Math.round(minutes)].join();
 }

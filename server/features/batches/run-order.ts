@@ -13,7 +13,7 @@ import type { BatchRow } from './batches.queries.ts';
 import { borderedLabel, compose, pieceCentres } from './line-fit.ts';
 import type { WholeLine } from './lines.queries.ts';
 
-export interface OrderDie { id: string; name: string; geometry: DieGeometry; owned: number }
+export interface OrderDie { id: string; name: string; geometry: DieGeometry; owned: number; width_mm: number; height_mm: number }
 export interface OrderParts {
   batch: BatchRow;
   lines: WholeLine[];
@@ -122,6 +122,12 @@ function runLine(line: WholeLine, parts: OrderParts): { line: RunLine; die: RunO
   };
 }
 
+/** Without a name a die is called by its size; figures in mm, as printed on most of them. */
+function dieTitle(die: OrderDie): string {
+  const mm = (length: number) => String(Math.round(length * 10) / 10);
+  return die.name || `${mm(die.width_mm)} × ${mm(die.height_mm)} mm`;
+}
+
 interface Label { die: RunOrder['dies'][number]; dieName: string; centre: Point; rotationDeg: number }
 
 function labelOf(line: WholeLine, artwork: Outline, parts: OrderParts): Label | Refusal {
@@ -133,7 +139,7 @@ function labelOf(line: WholeLine, artwork: Outline, parts: OrderParts): Label | 
   const die = line.die_id === null ? undefined : parts.dies.get(line.die_id);
   if (!die || line.placed_by === null) return { code: 'no-die', message: 'No die has been chosen for it. Choose one at the step Fit.' };
   return {
-    die: { id: die.id, geometry: die.geometry, owned: die.owned }, dieName: die.name,
+    die: { id: die.id, geometry: die.geometry, owned: die.owned }, dieName: dieTitle(die),
     centre: { x: line.centre_x_mm!, y: line.centre_y_mm! }, rotationDeg: line.rotation_deg!,
   };
 }
