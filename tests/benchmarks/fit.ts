@@ -1,9 +1,9 @@
 /**
  * The fit table: 60 sentiments of about 500 points against 60 dies. CPU time of this process on the calling thread and the collector's, the less of two
- * runs; squares looked at for each fit; and what a plain grid of places would take for the same 0.02 mm, reckoned from 300 of its looks.
+ * runs; cells looked at for each fit; and what a plain grid of places would take for the same 0.02 mm, reckoned from 300 of its looks.
  */
 import { borderInArea, turnedInk } from '../../server/engine/fit/border-in-area.ts';
-import { fitAtTurn } from '../../server/engine/fit/fit-pair.ts';
+import { fitRound } from '../../server/engine/fit/fit-pair.ts';
 import { fitTable, type DieGeometry } from '../../server/engine/fit/index.ts';
 import { prepareArtwork, prepareDie, turnArtwork, type PreparedArtwork, type PreparedDie } from '../../server/engine/fit/prepared.ts';
 import type { Outline } from '../../server/engine/geometry/types.ts';
@@ -18,12 +18,12 @@ export async function run(_options: { json?: boolean } = {}): Promise<{ title: s
   const rows = (['convex', 'mixed', 'concave'] as const).map((which) => {
     const set = dies(COUNT, which);
     const seconds = Math.min(timed(artworks, set), timed(artworks, set));
-    const { squares, widestGapMm, gridSeconds } = looks(artworks, set);
-    return [`${COUNT} × ${COUNT}, ${which}`, round(seconds, 2), which === 'mixed' ? 3 : which === 'convex' ? 1 : '', round(squares, 1), round(widestGapMm, 4), which === 'convex' ? 'exact' : Math.round(gridSeconds)];
+    const { cells, widestGapMm, gridSeconds } = looks(artworks, set);
+    return [`${COUNT} × ${COUNT}, ${which}`, round(seconds, 2), which === 'mixed' ? 3 : which === 'convex' ? 1 : '', round(cells, 1), round(widestGapMm, 4), which === 'convex' ? 'exact' : Math.round(gridSeconds)];
   });
   return {
     title: `Fit table, sentiments of ${Math.round(points)} points on average`,
-    columns: ['table', 'seconds (cpu)', 'goal', 'squares a fit', 'widest gap to the bound, mm', 'plain grid in the not convex ones, seconds (reckoned)'],
+    columns: ['table', 'seconds (cpu)', 'goal', 'cells a fit', 'widest gap to the bound, mm', 'plain grid in the not convex ones, seconds (reckoned)'],
     rows,
   };
 }
@@ -35,13 +35,13 @@ function timed(artworks: Outline[], set: DieGeometry[]): number {
   return (used.user + used.system) / 1e6;
 }
 
-function looks(artworks: Outline[], set: DieGeometry[]): { squares: number; widestGapMm: number; gridSeconds: number } {
+function looks(artworks: Outline[], set: DieGeometry[]): { cells: number; widestGapMm: number; gridSeconds: number } {
   const preparedArtworks = artworks.map(prepareArtwork), preparedDies = set.map((die) => prepareDie(die));
-  let squares = 0, widestGapMm = 0, gridPlaces = 0;
+  let cells = 0, widestGapMm = 0, gridPlaces = 0;
   for (const artwork of preparedArtworks) {
     for (const die of preparedDies) {
-      const found = fitAtTurn(artwork, die, 0);
-      squares += found.squares ?? 0;
+      const found = fitRound(artwork, die, 0);
+      cells += found.cells ?? 0;
       widestGapMm = Math.max(widestGapMm, found.bound - found.border);
       if (die.concave === null) continue;
       // Places where the ink's box lies in the area's, 0.028 mm apart: none is farther than 0.02 mm from one.
@@ -51,7 +51,7 @@ function looks(artworks: Outline[], set: DieGeometry[]): { squares: number; wide
     }
   }
   const fits = artworks.length * set.length;
-  return { squares: squares / fits, widestGapMm, gridSeconds: gridPlaces * secondsALook(preparedArtworks, preparedDies) };
+  return { cells: cells / fits, widestGapMm, gridSeconds: gridPlaces * secondsALook(preparedArtworks, preparedDies) };
 }
 
 function secondsALook(artworks: PreparedArtwork[], dies: PreparedDie[]): number {

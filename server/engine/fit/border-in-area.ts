@@ -53,7 +53,7 @@ export function borderInArea(area: ConcaveArea, ink: TurnedInk, x: number, y: nu
       const ax = tree.ax[e] + x, ay = tree.ay[e] + y;
       const atA = field.signed(ax, ay);
       if (atA < border) border = atA;
-      if (least < 0) border = lowestOnEdge(field, ax, ay, atA, tree.bx[e] + x, tree.by[e] + y, field.signed(tree.bx[e] + x, tree.by[e] + y), border);
+      if (least < 0) border = lowestOnEdge(field, ax, ay, atA, tree.bx[e] + x, tree.by[e] + y, field.signed(tree.bx[e] + x, tree.by[e] + y), border, below);
     }
     if (border < below) return border;
     i = tree.to[i] > tree.from[i] ? tree.after[i] : i + 1;
@@ -98,8 +98,9 @@ export function outsideBox(box: Box, x: number, y: number): number {
   return Math.hypot(dx, dy);
 }
 
-/** Lowest signed distance along an ink edge from a to b where that is below 0 and below `soFar`. */
-function lowestOnEdge(field: DistanceField, ax: number, ay: number, atA: number, bx: number, by: number, atB: number, soFar: number): number {
+/** Lowest signed distance along an ink edge from a to b where that is below 0 and below `soFar`; or any value below `below`. */
+function lowestOnEdge(field: DistanceField, ax: number, ay: number, atA: number, bx: number, by: number, atB: number, soFar: number, below: number): number {
+  if (soFar < below) return soFar;
   const length = Math.hypot(bx - ax, by - ay);
   // The signed distance changes by no more than the way gone.
   if ((atA + atB - length) / 2 >= Math.min(soFar, 0) - DEPTH_EPS_MM) return soFar;
@@ -110,8 +111,8 @@ function lowestOnEdge(field: DistanceField, ax: number, ay: number, atA: number,
   } else if (-deepestPossible(field, candidates, ax, ay, bx, by) >= soFar - DEPTH_EPS_MM) return soFar;
   if (length < DEPTH_EPS_MM) return soFar;
   const mx = (ax + bx) / 2, my = (ay + by) / 2, atM = field.signed(mx, my);
-  const lower = lowestOnEdge(field, ax, ay, atA, mx, my, atM, Math.min(soFar, atM));
-  return lowestOnEdge(field, mx, my, atM, bx, by, atB, lower);
+  const lower = lowestOnEdge(field, ax, ay, atA, mx, my, atM, Math.min(soFar, atM), below);
+  return lowestOnEdge(field, mx, my, atM, bx, by, atB, lower, below);
 }
 
 /** The distance to one fixed edge is convex, so along a way it is largest at an end; the distance to the area is no larger. */

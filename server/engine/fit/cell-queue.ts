@@ -1,8 +1,16 @@
 /**
- * Binary heap of squares, the largest bound first (J. W. J. Williams, "Algorithm 232: Heapsort", CACM 7, 1964). Of equal bounds the
+ * Binary heap of cells of places and turns, the largest bound first (J. W. J. Williams, "Algorithm 232: Heapsort", CACM 7, 1964). Of equal bounds the
  * order is that of the heap, the same on every machine. The array is mutated. Cost O(log n) each.
  */
-export interface Cell { x: number; y: number; half: number; bound: number }
+export interface Cell {
+  /** Middle and half side of a square of places. */
+  x: number; y: number; half: number;
+  /** Middle and half width of an interval of turns. */
+  angleDeg: number; halfDeg: number;
+  bound: number;
+  /** More is lost by the turns' width than by the places': halve that. */
+  splitTurn: boolean;
+}
 
 export function pushCell(heap: Cell[], cell: Cell): void {
   let at = heap.length;

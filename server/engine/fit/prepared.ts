@@ -66,7 +66,8 @@ export interface PreparedArtwork {
   /** Relative to the centre of the box. */
   rings: Ring[];
   hull: Ring;
-  /** Greatest distance of ink from the middle of the smallest circle found round it: how far a turn can move ink if the place may follow. */
+  /** Middle of the smallest circle found round all ink, and its radius: how far a turn about it can move ink. */
+  pivot: Point;
   swingMm: number;
   /** Only for areas that are not convex; worked out when first asked for. */
   ink(): Ink;
@@ -84,7 +85,7 @@ export function prepareArtwork(artwork: Outline): PreparedArtwork {
   const rings = artwork.rings.filter((ring) => ring.length > 0).map((ring) => ring.map((p) => ({ x: p.x - centre.x, y: p.y - centre.y })));
   const hull = outlineHull({ rings });
   let ink: Ink | undefined;
-  return { rings, hull, swingMm: swing(hull), ink: () => (ink ??= prepareInk(rings)) };
+  return { rings, hull, ...swing(hull), ink: () => (ink ??= prepareInk(rings)) };
 }
 
 function prepareInk(rings: Ring[]): Ink {
@@ -96,18 +97,18 @@ function prepareInk(rings: Ring[]): Ink {
  * Radius of a circle round all points that is nearly the smallest: steps towards the farthest point, each shorter (M. Bădoiu,
  * K. L. Clarkson, "Smaller core-sets for balls", SODA 2003). Any centre gives a valid bound; a better one only a tighter one.
  */
-function swing(hull: Ring): number {
-  let c: Point = { x: 0, y: 0 }, best = Infinity;
+function swing(hull: Ring): { pivot: Point; swingMm: number } {
+  let c: Point = { x: 0, y: 0 }, pivot = c, swingMm = Infinity;
   for (let i = 1; i <= 40; i++) {
     let far = hull[0], farSq = -1;
     for (const p of hull) {
       const distSq = (p.x - c.x) ** 2 + (p.y - c.y) ** 2;
       if (distSq > farSq) { farSq = distSq; far = p; }
     }
-    best = Math.min(best, Math.sqrt(farSq));
+    if (farSq < swingMm * swingMm) { swingMm = Math.sqrt(farSq); pivot = c; }
     c = { x: c.x + (far.x - c.x) / (i + 1), y: c.y + (far.y - c.y) / (i + 1) };
   }
-  return best;
+  return { pivot, swingMm };
 }
 
 export interface TurnedArtwork {

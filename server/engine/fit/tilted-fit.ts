@@ -1,5 +1,5 @@
 /**
- * Best tilt of an artwork round a turn: branch and bound over the angle.
+ * Best tilt of an artwork round a turn in a convex area, where a fit at a fixed angle is exact: branch and bound over the angle.
  *
  * A tilt by half an angle h moves no ink farther than 2·swing·sin(h/2) if the place may follow, where swing is the radius of a circle round
  * all ink; so the best border over an interval is at most the one at its middle plus that. Intervals that cannot beat the best are
@@ -11,16 +11,16 @@ import type { ProvenPlace } from './fit-pair.ts';
 
 /** A tilt that gains less is not worth its looks, and may be no gain at all in a circle drawn as chords. */
 const WORTH_TILTING_MM = 0.008;
-/** What is left open in all; more than a fit at a fixed angle leaves open, or the search would never end. */
+/** What is left open in all, against the upright artwork as well as against the best tilt. */
 const TILT_GAP_MM = 0.012;
 
-export type FitAt = (angleDeg: number, worthMm: number) => ProvenPlace;
+export type FitAt = (angleDeg: number) => ProvenPlace;
 
 interface Interval { middleDeg: number; halfDeg: number; bound: number }
 
-/** `gapOfFits`: by how much a fit at a fixed angle may itself be bettered; 0 where it is exact. */
-export function tiltedFit(artwork: PreparedArtwork, turnDeg: number, tiltDeg: number, gapOfFits: number, fitAt: FitAt, worthMm: number): ProvenPlace {
-  const upright = fitAt(turnDeg, worthMm);
+/** `worthMm`: a place no better than this need not be found, only ruled out. */
+export function tiltedFit(artwork: PreparedArtwork, turnDeg: number, tiltDeg: number, fitAt: FitAt, worthMm: number): ProvenPlace {
+  const upright = fitAt(turnDeg);
   let best = upright;
   let dropped = upright.bound;
   const enough = (): number => Math.max(best.border, worthMm) + TILT_GAP_MM;
@@ -28,7 +28,7 @@ export function tiltedFit(artwork: PreparedArtwork, turnDeg: number, tiltDeg: nu
 
   const open: Interval[] = [];
   const look = (middleDeg: number, halfDeg: number): void => {
-    const place = fitAt(middleDeg, enough() - gain(halfDeg) - gapOfFits);
+    const place = fitAt(middleDeg);
     if (place.border > best.border && place.border > upright.border + WORTH_TILTING_MM) best = place;
     const bound = place.bound + gain(halfDeg);
     if (bound <= enough()) dropped = Math.max(dropped, bound);
@@ -55,7 +55,7 @@ function steadied(from: ProvenPlace, turnDeg: number, tiltDeg: number, fitAt: Fi
   let best = from;
   for (let step = STEADY_START_DEG; step > STEADY_END_DEG;) {
     const tries = [-step, step].map((by) => Math.max(turnDeg - tiltDeg, Math.min(turnDeg + tiltDeg, best.artwork.angleDeg + by)));
-    const better = tries.map((angleDeg) => fitAt(angleDeg, best.border)).find((place) => place.border > best.border + 1e-9);
+    const better = tries.map(fitAt).find((place) => place.border > best.border + 1e-9);
     if (better) best = better;
     else step /= 2;
   }
