@@ -1,6 +1,7 @@
 /** The Express application: headers, session, the API from the features' tables, and the built client. */
 import { existsSync } from 'node:fs';
 import { join } from 'node:path';
+import compression from 'compression';
 import express from 'express';
 import type { Express, RequestHandler } from 'express';
 import helmet from 'helmet';
@@ -43,7 +44,8 @@ export function createApp({ deps, features, pool }: Pick<Application, 'deps' | '
   api.use(nothingHere);
   app.use('/api', api);
 
-  app.use(client(config.clientFolder));
+  // Pages only: answers of the API hold the form token beside words from outside, and events must flow at once.
+  app.use(compression(), client(config.clientFolder));
   app.use(problemAnswers(log));
   return app;
 }
@@ -93,7 +95,7 @@ function serverFeature({ db }: Application['deps'], table: () => RouteTable): Fe
 /** Built files carry their content's hash in their names and never change; pages are all the same file. */
 function client(folder: string): RequestHandler {
   const router = express.Router();
-  router.use('/assets', express.static(join(folder, 'assets'), { immutable: true, maxAge: '1y', index: false, fallthrough: false }));
+  router.use('/assets', express.static(join(folder, 'assets'), { immutable: true, maxAge: '1y', index: false }), nothingHere);
   router.use(express.static(folder, { index: false, maxAge: '1h' }));
   router.get('/{*page}', (_req, res, next) => {
     const page = join(folder, 'index.html');

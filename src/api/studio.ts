@@ -1,14 +1,18 @@
 import type { AuditEntry, Invitation, Member, Studio, StudioSettings } from '../../server/contract/studio.ts';
 import type { Role } from '../../server/contract/shared.ts';
 import { call } from './http.ts';
-import type { Body } from './http.ts';
+import type { Answer, Body } from './http.ts';
 
+export type DeletedStudio = Answer<'GET /deleted-studios'>['items'][number];
 export type { AuditEntry, Invitation, Member, Role, Studio, StudioSettings };
 
 export const makeStudio = (name: string) => call('POST /studios', { body: { name } });
 export const readStudio = (studioId: string) => call('GET /studios/:studioId', { params: { studioId } });
 export const renameStudio = (studioId: string, version: number, name: string) => call('PATCH /studios/:studioId', { params: { studioId }, body: { version, name } });
 export const deleteStudio = (studioId: string, confirm: string) => call('DELETE /studios/:studioId', { params: { studioId }, query: { confirm } });
+
+export const restoreStudio = (studioId: string) => call('POST /studios/:studioId/restore', { params: { studioId } });
+export const listDeletedStudios = async (): Promise<DeletedStudio[]> => (await call('GET /deleted-studios')).items;
 
 export const readSettings = (studioId: string) => call('GET /studios/:studioId/settings', { params: { studioId } });
 export const changeSettings = (studioId: string, change: Body<'PATCH /studios/:studioId/settings'>) => call('PATCH /studios/:studioId/settings', { params: { studioId }, body: change });

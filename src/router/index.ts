@@ -1,7 +1,8 @@
 /** All addresses. Each noun lists its own in routes/; every page is loaded when it is first opened. */
 import { createRouter, createWebHistory } from 'vue-router';
-import type { Router, RouteRecordRaw } from 'vue-router';
+import type { RouteLocationNormalized, Router, RouteRecordRaw } from 'vue-router';
 import { SECTIONS } from '../components/frame/sections.ts';
+import { useNotices } from '../stores/notices.ts';
 import { useStudio } from '../stores/studio.ts';
 import { guard } from './guard.ts';
 import { personRoutes, plainRoutes } from './routes/account.ts';
@@ -23,6 +24,21 @@ declare module 'vue-router' {
 }
 
 const inStudio: RouteRecordRaw[] = [...batchRoutes, ...stampSetRoutes, ...dieRoutes, ...gearRoutes, ...studioRoutes];
+
+/** Not more often than this, or a page that is really gone would load for ever. */
+const RELOAD_EVERY_MS = 20_000;
+const RELOADED_AT = 'inkmuster.reloaded-at';
+
+/** A page whose script is gone: the server has been updated since this tab was opened. Loading it whole brings the new one. */
+function reloadAfterUpdate(error: Error, to: RouteLocationNormalized): void {
+  if (!/dynamically imported module|preload|importing a module/i.test(error.message)) return;
+  if (Date.now() - Number(sessionStorage.getItem(RELOADED_AT) ?? 0) < RELOAD_EVERY_MS) {
+    useNotices().show({ kind: 'failed', text: 'This page could not be loaded. Check the connection and try again.' });
+    return;
+  }
+  sessionStorage.setItem(RELOADED_AT, String(Date.now()));
+  window.location.assign(to.fullPath);
+}
 
 export function createAppRouter(): Router {
   const router: Router = createRouter({
@@ -52,5 +68,6 @@ export function createAppRouter(): Router {
     ],
   });
   router.beforeEach(guard);
+  router.onError(reloadAfterUpdate);
   return router;
 }
