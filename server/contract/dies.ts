@@ -1,7 +1,8 @@
 /** Nested sets of label dies: their shapes, sizes, stitch lines and rims. */
 import { z } from 'zod';
 import { dieProblem } from '../engine/fit/die-shapes.ts';
-import type { DieGeometry } from '../engine/fit/types.ts';
+import type { DieGeometry, DieShape } from '../engine/fit/types.ts';
+import type { Outline } from '../engine/geometry/types.ts';
 import { routes } from './route.ts';
 import { Id, Instant, LengthOrZeroMm, listQuery, Name, Note, page, StudioItemParams, StudioParams, Version } from './shared.ts';
 
@@ -10,9 +11,8 @@ const MAX_OUTLINE_POINTS = 5000;
 
 /** The shape's own parameters are checked by the kernel that draws it, so that they are described once. */
 export const Geometry = z
-  .object({ shape: z.looseObject({ kind: z.string().max(40) }), stitchInsetMm: LengthOrZeroMm.optional(), rimMm: LengthOrZeroMm.optional() })
-  .transform((value, context): DieGeometry => {
-    const geometry = value as unknown as DieGeometry;
+  .object({ shape: z.custom<DieShape>((shape) => typeof shape === 'object' && shape !== null, 'Choose a shape.'), stitchInsetMm: LengthOrZeroMm.optional(), rimMm: LengthOrZeroMm.optional() })
+  .transform((geometry, context): DieGeometry => {
     const shape = geometry.shape;
     const tooMany = shape.kind === 'outline' && (shape.outline?.rings ?? []).flat().length > MAX_OUTLINE_POINTS;
     const problem = tooMany ? `An outline has at most ${MAX_OUTLINE_POINTS} points.` : dieProblem(geometry);
@@ -73,6 +73,19 @@ export const dieRoutes = routes({
   'POST /studios/:studioId/die-sets/:id/dies': {
     summary: 'Add dies to a set', access: 'maker', params: StudioItemParams, status: 201,
     body: z.object({ dies: z.array(NewDie).min(1, 'Add at least one die.').max(60, 'At most 60 dies at once.') }), response: DieSet,
+  },
+  'GET /studios/:studioId/fit-table': {
+    summary: 'What a fit table is made of: sentiments with their outlines, dies, the studio\'s verdict limits', access: 'helper', params: StudioParams,
+    query: z.object({ stampSet: Id.optional(), dieSet: Id.optional() }),
+    response: z.object({
+      sentiments: z.array(z.object({
+        id: Id, stampSetId: Id, stampSetName: z.string(), name: z.string(), tags: z.array(z.string()), widthMm: z.number(), heightMm: z.number(), artwork: z.custom<Outline>(),
+        /** False where the artwork is only the rectangle of a typed size. */
+        outlined: z.boolean(),
+      })),
+      dies: z.array(Die.extend({ dieSetName: z.string() })),
+      goodMm: z.number(), snugMm: z.number(),
+    }),
   },
   'GET /studios/:studioId/dies': {
     summary: 'All dies of the studio, smallest first', access: 'helper', params: StudioParams,

@@ -18,6 +18,7 @@ export function createDies(deps: Deps): Feature {
       'DELETE /studios/:studioId/die-sets/:id': (call) => dies.remove(call.params.studioId, call.params.id, actor(call)),
       'POST /studios/:studioId/die-sets/:id/restore': ({ params }) => dies.restore(params.studioId, params.id),
       'POST /studios/:studioId/die-sets/:id/dies': ({ params, body }) => dies.addDies(params.studioId, params.id, body.dies),
+      'GET /studios/:studioId/fit-table': ({ params, query }) => dies.fitTable(params.studioId, query),
       'GET /studios/:studioId/dies': ({ params }) => dies.dies(params.studioId),
       'PATCH /studios/:studioId/dies/:id': ({ params, body }) => dies.changeDie(params.studioId, params.id, body),
       'DELETE /studios/:studioId/dies/:id': (call) => dies.removeDie(call.params.studioId, call.params.id, actor(call)),

@@ -9,6 +9,8 @@ import { outlineBox } from '../../engine/geometry/ring.ts';
 import { conflict, notFound, stale } from '../../errors/app-error.ts';
 import type { Deps } from '../../feature.ts';
 import { recordAudit } from '../account/audit.queries.ts';
+import { sentimentsToFit } from '../stamp-sets/sentiments.queries.ts';
+import { findSettings } from '../studio/studio.queries.ts';
 import {
   allDies, diesOfSets, findDie, findDieSet, insertDies, insertDieSet, listDieSets, setDieDeleted, setDieSetDeleted, toDie, toDieSet, touchDieSet, updateDie, updateDieSet,
 } from './dies.queries.ts';
@@ -52,6 +54,12 @@ export function createDieService({ db, events }: Deps) {
 
     async dies(studioId: string) {
       return { items: (await allDies(db, studioId)).map((row) => ({ ...toDie(row), dieSetName: row.set_name })) };
+    },
+
+    async fitTable(studioId: string, { stampSet, dieSet }: QueryOf<Routes['GET /studios/:studioId/fit-table']>) {
+      const [sentiments, dies, { goodMm, snugMm }] = await Promise.all([sentimentsToFit(db, studioId, stampSet ?? null), allDies(db, studioId), findSettings(db, studioId)]);
+      const chosen = dies.filter((row) => dieSet === undefined || row.die_set_id === dieSet);
+      return { sentiments, dies: chosen.map((row) => ({ ...toDie(row), dieSetName: row.set_name })), goodMm, snugMm };
     },
 
     async create(studioId: string, body: NewSet): Promise<DieSet> {

@@ -96,6 +96,25 @@ export async function sentimentsByIds(db: Knex, studioId: string, ids: readonly 
   });
 }
 
+export interface SentimentToFit { id: string; stampSetId: string; stampSetName: string; name: string; tags: string[]; widthMm: number; heightMm: number; artwork: Outline; outlined: boolean }
+
+/** Sentiments that count and have a size, set by set in the order of their numbers; of one set or of all. */
+export async function sentimentsToFit(db: Knex, studioId: string, stampSetId: string | null): Promise<SentimentToFit[]> {
+  const query = db('sentiments')
+    .join('stamp_sets', (join) => join.on('stamp_sets.studio_id', 'sentiments.studio_id').on('stamp_sets.id', 'sentiments.stamp_set_id'))
+    .leftJoin('readings', (join) => join.on('readings.studio_id', 'sentiments.studio_id').on('readings.id', 'sentiments.reading_id'))
+    .where({ 'sentiments.studio_id': studioId, 'sentiments.present': true, 'sentiments.set_aside': false })
+    .whereNull('sentiments.deleted_at').whereNull('stamp_sets.deleted_at').whereNull('readings.deleted_at').whereNotNull('sentiments.artwork')
+    .orderBy(['stamp_sets.name', 'sentiments.stamp_set_id', 'sentiments.number', 'sentiments.id']).limit(MOST_TO_FIT);
+  if (stampSetId !== null) query.where('sentiments.stamp_set_id', stampSetId);
+  const rows = await query.select<(OutlinedRow & { set_name: string })[]>([...qualified, 'sentiments.artwork', 'stamp_sets.name as set_name']);
+  return rows.map((row) => ({
+    id: row.id, stampSetId: row.stamp_set_id, stampSetName: row.set_name, name: titleOf(row), tags: row.tags, widthMm: row.width_mm!, heightMm: row.height_mm!, artwork: row.artwork!, outlined: row.outlined,
+  }));
+}
+/** More rows than this no table shows at once; one set is chosen then. */
+const MOST_TO_FIT = 400;
+
 export function findSentiment(db: Knex, studioId: string, id: string, options: { deleted?: boolean } = {}): Promise<OutlinedRow | undefined> {
   const query = db<OutlinedRow>('sentiments').where({ studio_id: studioId, id });
   return (options.deleted ? query.whereNotNull('deleted_at') : query.whereNull('deleted_at')).first([...COLUMNS, 'artwork']);
