@@ -4,6 +4,7 @@
  *
  * Pixel (i, j) covers [i, i+1) × [j, j+1) and its value stands at its middle. Between an ink pixel and a paper pixel beside it the edge lies
  * where the field, taken as linear, is zero: half way where both are equally far from it, so that one pixel of hard ink has a box of 1 × 1.
+ * Where two straight edges along the pixels' axes meet, the corner between them is added, which the squares alone would cut off.
  * Ink touching at corners is one piece. Rings run with ink to the right: outer rings clockwise as seen on the page, holes the other way.
  * One point per crack; nothing is mutated. Cost: linear in the length of the outline.
  */
@@ -32,18 +33,36 @@ export function traceContours(mask: InkMask, piece: Component): Outline {
 function walk(mask: InkMask, startX: number, startY: number, visited: Set<number>): Ring {
   const { width, height, ink } = mask;
   const inked = (x: number, y: number) => x >= 0 && y >= 0 && x < width && y < height && ink[y * width + x] === 1;
-  const ring: Ring = [];
+  const ring: Ring = [], directions: number[] = [];
   let cornerX = startX, cornerY = startY + 1, direction = UP;
   do {
     const x = cornerX + RIGHT_X[direction], y = cornerY + RIGHT_Y[direction];
     if (direction === UP) visited.add(y * width + x);
     ring.push(crossing(mask, x, y, cornerX + LEFT_X[direction], cornerY + LEFT_Y[direction]));
+    directions.push(direction);
     cornerX += STEP_X[direction];
     cornerY += STEP_Y[direction];
     if (inked(cornerX + LEFT_X[direction], cornerY + LEFT_Y[direction])) direction = (direction + 3) % 4;
     else if (!inked(cornerX + RIGHT_X[direction], cornerY + RIGHT_Y[direction])) direction = (direction + 1) % 4;
   } while (cornerX !== startX || cornerY !== startY + 1 || direction !== UP);
-  return ring;
+  return withCorners(ring, directions);
+}
+
+/** Edges off a straight line by more than this, px, between two cracks are bent. */
+const STRAIGHT_PX = 0.1;
+
+function withCorners(ring: Ring, directions: readonly number[]): Ring {
+  const n = ring.length, sharp: Ring = [];
+  for (let i = 0; i < n; i++) {
+    const before = (i + n - 1) % n, next = (i + 1) % n, after = (i + 2) % n;
+    sharp.push(ring[i]);
+    const turns = directions[i] !== directions[next] && directions[before] === directions[i] && directions[next] === directions[after];
+    if (!turns) continue;
+    const across = directions[i] % 2 === 0;
+    const bent = across ? Math.max(Math.abs(ring[i].y - ring[before].y), Math.abs(ring[next].x - ring[after].x)) : Math.max(Math.abs(ring[i].x - ring[before].x), Math.abs(ring[next].y - ring[after].y));
+    if (bent < STRAIGHT_PX) sharp.push(across ? { x: ring[next].x, y: ring[i].y } : { x: ring[i].x, y: ring[next].y });
+  }
+  return sharp;
 }
 
 /** Where the field is zero between the middles of an ink pixel and the paper pixel beside it. */

@@ -4,8 +4,8 @@
  *
  * Input: the file and its header as `probePicture` told it, so that sizes are known to be bearable. Output: RGBA as stored, not yet turned
  * upright, transparent pixels laid on white paper. Throws ReadingError `damaged` where the file cannot be decoded or breaks off.
- * Memory: 4 bytes a pixel and as much again while decoding. The codecs' heaps never shrink, so that after a very large picture they
- * are dropped and made afresh for the next one.
+ * Memory: 4 bytes a pixel, and for JPEG and WebP up to twice as much again in the codec's heap, which never shrinks: whoever read a very large
+ * picture in a thread does well to end that thread.
  */
 import { readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
@@ -19,9 +19,6 @@ export interface Pixels {
   /** 4 bytes a pixel: red, green, blue, and 255. */
   rgba: Uint8Array;
 }
-
-/** Heaps grown beyond this picture size are not kept. */
-const KEEP_CODEC_PIXELS = 16_000_000;
 
 type Codec = (bytes: ArrayBuffer) => Promise<{ data: Uint8ClampedArray; width: number; height: number }>;
 type CodecModule = { default: Codec; init: (wasm: WebAssembly.Module) => Promise<void> };
@@ -37,8 +34,8 @@ const ready = new Set<string>();
 export async function decodePicture(file: Uint8Array, header: PictureHeader): Promise<Pixels> {
   let pixels: Pixels;
   try {
-    if (header.type === 'jpeg') pixels = await decodeJpeg(file, header);
-    else if (header.type === 'webp') pixels = await decodeByCodec('webp', file, header);
+    if (header.type === 'jpeg') pixels = await decodeJpeg(file);
+    else if (header.type === 'webp') pixels = await decodeByCodec('webp', file);
     else pixels = (header.type === 'png' && decodePng(file)) || (await decodeByJimp(file));
   } catch (error) {
     // Decoders throw errors of all kinds, and WebAssembly ones even numbers.
@@ -50,23 +47,28 @@ export async function decodePicture(file: Uint8Array, header: PictureHeader): Pr
   return pixels;
 }
 
-async function decodeJpeg(file: Uint8Array, header: PictureHeader): Promise<Pixels> {
+async function decodeJpeg(file: Uint8Array): Promise<Pixels> {
   // The codec fills what is missing of a broken-off file with grey, which would look like ink.
   if (!hasEndOfImage(file)) throw damaged();
   try {
-    return await decodeByCodec('jpeg', file, header);
+    return await decodeByCodec('jpeg', file);
   } catch {
     return decodeByJimp(file);
   }
 }
 
+/** Looked for behind the first scan's header only: previews in a camera's notes have ends of their own. */
 function hasEndOfImage(file: Uint8Array): boolean {
-  // Inside compressed data 0xff is followed by 0 or a restart marker; cameras write previews and notes after the end.
-  for (let i = file.length - 2; i > 1; i--) if (file[i] === 0xff && file[i + 1] === 0xd9) return true;
+  let at = 2;
+  while (at + 4 < file.length && !(file[at] === 0xff && file[at + 1] === 0xda)) {
+    at += file[at] !== 0xff || file[at + 1] === 0xff ? 1 : 2 + ((file[at + 2] << 8) | file[at + 3]);
+  }
+  // Inside compressed data 0xff is followed by 0 or a restart marker.
+  for (let i = file.length - 2; i > at; i--) if (file[i] === 0xff && file[i + 1] === 0xd9) return true;
   return false;
 }
 
-async function decodeByCodec(kind: keyof typeof codecs, file: Uint8Array, header: PictureHeader): Promise<Pixels> {
+async function decodeByCodec(kind: keyof typeof codecs, file: Uint8Array): Promise<Pixels> {
   const codec = (await codecs[kind].load()) as unknown as CodecModule;
   if (!ready.has(kind)) {
     let wasm = compiled.get(kind);
@@ -78,18 +80,12 @@ async function decodeByCodec(kind: keyof typeof codecs, file: Uint8Array, header
     ready.add(kind);
   }
   try {
-    const bytes = file.slice().buffer as ArrayBuffer;
-    const { data, width, height } = await codec.default(bytes);
+    // A copy with a buffer of its own: a Buffer's may be a pool, of which the codec would take all.
+    const { data, width, height } = await codec.default(new Uint8Array(file).buffer);
     return { width, height, rgba: new Uint8Array(data.buffer, data.byteOffset, data.byteLength) };
   } catch (error) {
     ready.delete(kind);
     throw error;
-  } finally {
-    if (header.storedWidthPx * header.storedHeightPx > KEEP_CODEC_PIXELS) {
-      ready.delete(kind);
-      await codec.init(await compiled.get(kind)!);
-      ready.add(kind);
-    }
   }
 }
 

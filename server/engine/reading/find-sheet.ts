@@ -34,6 +34,8 @@ const DARK = 40;
 const UNEVEN_SHARE = 0.035, UNEVEN_TIMES = 2.2;
 /** Shares of the region: smaller is no paper; larger fills it. */
 const LEAST_PAPER = 0.12, FILLS = 0.985;
+/** Paper darker than its ground, by less or by more than DEEP, must be larger than a label of solid ink: these shares of the ground's hull. */
+const LEAST_DARKER = 0.3, LEAST_DEEP = 0.45, DEEP = 0.5;
 /** Share of its hull that a four-sided surface fills, and share of a hull's area that its best four corners keep. */
 const QUAD_FILL = 0.93;
 /** A paper on another must hold this share of what stands out on both. */
@@ -47,7 +49,7 @@ interface Cells {
   /** 1 where an edge or other detail runs across. */
   uneven: Uint8Array;
 }
-interface Surface { cells: number; hull: Point[]; leader: number }
+interface Surface { cells: number; hull: Point[]; leader: number; level: number }
 
 export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
   const cells = reduceToCells(pixels, region);
@@ -137,7 +139,13 @@ function largeSurfaces(cells: Cells, labels: Int32Array, least: number): Surface
   const counts = new Map<number, number>();
   for (const label of labels) if (label >= 0) counts.set(label, (counts.get(label) ?? 0) + 1);
   const large = [...counts].filter(([, n]) => n >= least).sort((a, b) => b[1] - a[1]);
-  return large.map(([leader, count]) => ({ leader, cells: count, hull: convexHull(edgePlaces(cells, labels, leader)) }));
+  return large.map(([leader, count]) => ({ leader, cells: count, hull: convexHull(edgePlaces(cells, labels, leader)), level: meanLevel(cells, labels, leader, count) }));
+}
+
+function meanLevel({ colours }: Cells, labels: Int32Array, leader: number, count: number): number {
+  let sum = 0;
+  labels.forEach((label, i) => { if (label === leader) sum += luminance(colours[3 * i], colours[3 * i + 1], colours[3 * i + 2]); });
+  return sum / count;
 }
 
 /** Corners of the first and last cell of each row: enough for a hull. */
@@ -152,6 +160,8 @@ function edgePlaces({ columns, rows }: Cells, labels: Int32Array, leader: number
 }
 
 function liesOn(cells: Cells, labels: Int32Array, inner: Surface, outer: Surface): boolean {
+  const least = inner.level >= outer.level ? 0 : inner.level > DEEP * outer.level ? LEAST_DARKER : LEAST_DEEP;
+  if (hullArea(inner) < least * hullArea(outer)) return false;
   const quad = bestQuad(inner.hull);
   if (!quad || Math.abs(signedArea(quad)) < QUAD_FILL * hullArea(inner)) return false;
   let within = 0, around = 0;

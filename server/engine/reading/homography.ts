@@ -33,6 +33,8 @@ export function invertHomography(m: Readonly<Homography>): Homography {
 
 /** How much lengths grow at a place, all directions taken together: the root of the local growth of areas. */
 export function localScale(m: Readonly<Homography>, p: Point): number {
+  // Exact for the plain scale of a scan, where the root of the square would leave 1e-17 behind.
+  if (m[1] === 0 && m[3] === 0 && m[6] === 0 && m[7] === 0 && m[0] === m[4]) return Math.abs(m[0] / m[8]);
   const w = m[6] * p.x + m[7] * p.y + m[8];
   const determinant = m[0] * (m[4] * m[8] - m[5] * m[7]) - m[1] * (m[3] * m[8] - m[5] * m[6]) + m[2] * (m[3] * m[7] - m[4] * m[6]);
   return Math.sqrt(Math.abs(determinant / w ** 3));

@@ -20,8 +20,8 @@ const COARSE_DEG = 0.25, FINEST_DEG = 0.002;
 const UNEVENNESS = 0.06;
 /** Of long sentiments every second or third foot speaks. */
 const MAX_FEET = 100;
-/** A lean within this many standard errors of 0 is none; nor is one that moves the end of a wide sentiment by less than a tenth of a pixel. */
-const SURE_ERRORS = 2.5, LEAST_LEAN_DEG = 0.02;
+/** A lean within this many standard errors of 0 is none; nor is one as small as the unevenness of type itself can feign. */
+const SURE_ERRORS = 3, LEAST_LEAN_DEG = 0.08;
 const OWN_LEAN_DEG = 2, OWN_AGREEMENT_DEG = 1;
 /** How many times better feet and heads must line up at a sentiment's own lean than at the sheet's. */
 const OWN_BETTER = 1.6;
