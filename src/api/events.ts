@@ -1,4 +1,7 @@
-/** News of a studio by server-sent events. The browser reconnects by itself after a break; where it gives up, we open anew. */
+/**
+ * News of a studio by server-sent events. The browser reconnects by itself after a break; where it gives up, we open anew.
+ * A tab that nobody sees lets go of its connection: browsers allow six to a server without HTTP/2, and tabs left open would use them up.
+ */
 import type { Job } from '../../server/contract/jobs.ts';
 import { addressOf } from './http.ts';
 
@@ -12,11 +15,14 @@ export interface StudioNews {
 }
 
 const REOPEN_MS = 3000;
+/** A glance at another tab is no absence. */
+const UNSEEN_MS = 20_000;
 
 /** Returns what ends it. */
 export function listenToStudio(studioId: string, news: StudioNews): () => void {
   let source: EventSource | null = null;
   let timer: ReturnType<typeof setTimeout> | undefined;
+  let unseen: ReturnType<typeof setTimeout> | undefined;
   let openedBefore = false;
 
   const open = () => {
@@ -35,9 +41,21 @@ export function listenToStudio(studioId: string, news: StudioNews): () => void {
       if (source?.readyState === EventSource.CLOSED) timer = setTimeout(open, REOPEN_MS);
     });
   };
-  open();
-  return () => {
+  const seen = () => {
+    clearTimeout(unseen);
+    if (document.visibilityState === 'hidden') unseen = setTimeout(letGo, UNSEEN_MS);
+    else if (source === null) open();
+  };
+  const letGo = () => {
     clearTimeout(timer);
     source?.close();
+    source = null;
+  };
+  open();
+  document.addEventListener('visibilitychange', seen);
+  return () => {
+    document.removeEventListener('visibilitychange', seen);
+    clearTimeout(unseen);
+    letGo();
   };
 }

@@ -34,6 +34,7 @@ beforeEach(() => {
 afterEach(() => {
   vi.useRealTimers();
   vi.unstubAllGlobals();
+  vi.restoreAllMocks();
 });
 
 describe('a studio\'s news', () => {
@@ -57,6 +58,30 @@ describe('a studio\'s news', () => {
     source().dispatchEvent(new Event('open'));
     expect(reconnected).toHaveBeenCalledOnce();
     end();
+  });
+
+  it('let go of their connection while nobody sees the tab, and catch up when it is seen again', () => {
+    vi.useFakeTimers();
+    const reconnected = vi.fn();
+    const end = listenToStudio('s1', { reconnected });
+    source().dispatchEvent(new Event('open'));
+    const look = (state: DocumentVisibilityState) => {
+      vi.spyOn(document, 'visibilityState', 'get').mockReturnValue(state);
+      document.dispatchEvent(new Event('visibilitychange'));
+    };
+    look('hidden');
+    vi.advanceTimersByTime(5_000);
+    look('visible');
+    expect([FakeSource.opened.length, source().readyState]).toEqual([1, 1]);
+    look('hidden');
+    vi.advanceTimersByTime(60_000);
+    expect(source().readyState).toBe(FakeSource.CLOSED);
+    look('visible');
+    source().dispatchEvent(new Event('open'));
+    expect(FakeSource.opened).toHaveLength(2);
+    expect(reconnected).toHaveBeenCalledOnce();
+    end();
+    expect(source().readyState).toBe(FakeSource.CLOSED);
   });
 
   it('are opened anew where the browser has given up, and not after the end', () => {

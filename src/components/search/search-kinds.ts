@@ -46,7 +46,7 @@ export const SEARCH_KINDS: readonly SearchKind[] = [
     title: 'Die sets', noun: 'die-sets', list: 'dies',
     find: async (studioId, search) => {
       const { items, total } = await call('GET /studios/:studioId/die-sets', { params: { studioId }, query: { search, limit: FEW } });
-      return { total, hits: items.map((set) => ({ id: set.id, title: set.name, about: set.dies.length === 1 ? '1 die' : `${set.dies.length} dies`, to: { name: 'dies', params: { studioId }, query: { search: set.name } } })) };
+      return { total, hits: items.map((set) => ({ id: set.id, title: set.name, about: set.dies.length === 1 ? '1 die' : `${set.dies.length} dies`, to: { name: 'die-set', params: { studioId, dieSetId: set.id } } })) };
     },
   },
   {
