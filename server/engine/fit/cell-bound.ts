@@ -6,7 +6,7 @@
  * For ink p inside the area, the border is at most its distance to any one edge e. That distance is convex in the place:
  *   - linear, d + g·δ, while its foot stays on the edge and p does not reach it,
  *   - else at most d + g·δ + |δ|²/(2d) (from √(1 + t) ≤ 1 + t/2), with g the unit vector from the foot to p.
- * For a reflex corner v of the area and an ink edge the same holds with the roles changed. The hull's half-planes
+ * For ink outside see addOutsideBound. For a reflex corner v of the area and an ink edge the same holds with the roles changed. The hull's half-planes
  * hold for all places. Lengths mm. Rows are written into the given constraints; nothing else is mutated.
  */
 import type { DistanceField } from '../geometry/distance-field.ts';
@@ -51,8 +51,9 @@ function addInkBounds({ area, ink }: Surroundings, x: number, y: number, reach: 
     for (let e = tree.from[i]; e < tree.to[i]; e++) {
       const px = tree.ax[e] + x, py = tree.ay[e] + y;
       const signed = field.signed(px, py);
-      if (signed > reach || (signed <= 0 && !climb)) continue;
+      if (signed > reach) continue;
       const near = field.nearestEdge;
+      if (signed <= 0 && !climb) { addOutsideBound(field, near, px, py, signed, x, y, r, out); continue; }
       addEdgeSlope(field, near, px, py, signed, x, y, r, out, climb);
       if (tree.edges <= FEW_EDGES && signed > 0) addOtherWay(area, near, px, py, signed, x, y, reach, r, out);
     }
@@ -74,6 +75,33 @@ function addOtherWay({ field }: ConcaveArea, near: number, px: number, py: numbe
     if (ex * nearX + ey * nearY < 0.5 * Math.sqrt(distSq) * d) { other = e; otherSq = distSq; }
   }
   if (other >= 0) addEdgeSlope(field, other, px, py, Math.sqrt(otherSq), x, y, r, out, false);
+}
+
+/**
+ * Ink outside: its depth is the least of its distances to all edges that can come near, each at least its tangent d(e) + g(e)·δ. Against
+ * the slope g of the nearest, an edge that pulls another way loses |g(e) − g|·r at most, less what it is farther off.
+ */
+function addOutsideBound(field: DistanceField, near: number, px: number, py: number, signed: number, x: number, y: number, r: number, out: BorderConstraints): void {
+  const d = -signed;
+  if (d < TOUCHING_MM) return;
+  const candidates = field.candidatesWithin(px, py, r);
+  if (candidates === null) return;
+  const [gx, gy] = slopeFrom(field, near, px, py, d);
+  let err = 0;
+  for (let k = 0; k < candidates.length; k++) {
+    const e = candidates[k], dist = Math.sqrt(field.distSq(e, px, py));
+    if (dist >= d + 2 * r) continue;
+    const [ex, ey] = slopeFrom(field, e, px, py, dist);
+    err = Math.max(err, Math.hypot(ex - gx, ey - gy) * r - (dist - d));
+  }
+  // No better than the plain bound.
+  if (err < r) addSlope(out, x, y, signed, -gx, -gy, err);
+}
+
+/** Unit vector from an edge's nearest point to p. */
+function slopeFrom(field: DistanceField, e: number, px: number, py: number, dist: number): [number, number] {
+  const t = field.shareAlong(e, px, py);
+  return [(px - field.ax[e] - t * field.dx[e]) / dist, (py - field.ay[e] - t * field.dy[e]) / dist];
 }
 
 function addEdgeSlope(field: ConcaveArea['field'], e: number, px: number, py: number, signed: number, x: number, y: number, r: number, out: BorderConstraints, climb: boolean): void {

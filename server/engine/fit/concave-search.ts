@@ -67,7 +67,7 @@ export interface CellSearch {
 export interface CellSearchResult extends Place { angleDeg: number; bound: number; cells: number }
 
 /** Stops an endless search on rounding; the bound stays true then, only wider. */
-const MOST_CELLS = 100_000;
+const MOST_CELLS = 300_000;
 
 export function searchCells(poses: Poses, { turnDeg, tiltDeg, topBound, start, gapMm, worthMm, leastMm }: CellSearch): CellSearchResult {
   let best = { x: start.x, y: start.y, border: start.border, angleDeg: turnDeg };
@@ -159,9 +159,11 @@ function swallowedBound({ area, ink }: Pose, x: number, y: number, reach: number
 
 /** Pairs are worth their rows in squares this much smaller than the border; in larger ones only the hull is. */
 const SMALL_SQUARE_SHARE = 0.2;
+/** Likewise where ink is outside. */
+const SMALL_SQUARE_MM = 1.5;
 
 function addHullOrPairs(s: Pose, x: number, y: number, border: number, r: number, rows: BorderConstraints): void {
-  if (r < border * SMALL_SQUARE_SHARE) { addLocalBounds(s, x, y, border, r, rows, false); return; }
+  if (r < (border > 0 ? border * SMALL_SQUARE_SHARE : SMALL_SQUARE_MM)) { addLocalBounds(s, x, y, border, r, rows, false); return; }
   addHullBounds(s.hull, x, y, border + 2 * r, rows);
   addConstraint(rows, 0, 0, 1, border + r);
 }

@@ -7,7 +7,7 @@
  * artwork's centre. Built once an artwork in O(n log n); turned in O(n). Nothing is mutated afterwards.
  */
 import { sinCos } from '../geometry/transform.ts';
-import type { Ring } from '../geometry/types.ts';
+import type { Point, Ring } from '../geometry/types.ts';
 
 export interface InkTree {
   nodes: number;
@@ -33,10 +33,7 @@ const LEAF_EDGES = 4;
 interface Edge { ax: number; ay: number; bx: number; by: number }
 
 export function buildInkTree(rings: readonly Ring[]): InkTree {
-  const edges = rings.flatMap((ring) => ring.map((a, i): Edge => {
-    const b = ring[(i + 1) % ring.length];
-    return { ax: a.x, ay: a.y, bx: b.x, by: b.y };
-  }));
+  const edges = rings.flatMap((ring) => ring.flatMap((a, i) => shortEdges(a, ring[(i + 1) % ring.length])));
   const ordered: Edge[] = [];
   const node: { x: number; y: number; radius: number; after: number; from: number; to: number }[] = [];
 
@@ -65,6 +62,16 @@ export function buildInkTree(rings: readonly Ring[]): InkTree {
     ax: Float64Array.from(ordered, (e) => e.ax), ay: Float64Array.from(ordered, (e) => e.ay),
     bx: Float64Array.from(ordered, (e) => e.bx), by: Float64Array.from(ordered, (e) => e.by),
   };
+}
+
+/** Over a longer edge the ends say too little of what lies between them, above all where it reaches out of a label. */
+const LONGEST_MM = 3;
+
+function shortEdges(a: Point, b: Point): Edge[] {
+  const parts = Math.max(1, Math.ceil(Math.hypot(b.x - a.x, b.y - a.y) / LONGEST_MM));
+  // The last part ends exactly where the next edge begins.
+  const at = (k: number): Point => (k === parts ? b : { x: a.x + ((b.x - a.x) * k) / parts, y: a.y + ((b.y - a.y) * k) / parts });
+  return Array.from({ length: parts }, (_, k) => ({ ax: at(k).x, ay: at(k).y, bx: at(k + 1).x, by: at(k + 1).y }));
 }
 
 const DIRECTIONS = 16;

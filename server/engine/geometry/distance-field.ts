@@ -94,6 +94,22 @@ export class DistanceField {
     return cell === null ? this.all : cell.edges;
   }
 
+  /** All edges that can be nearest to some place within r of the point; null where r is too wide to tell cheaply. */
+  candidatesWithin(x: number, y: number, r: number): Int32Array | null {
+    for (const [perCoarse, edgesOf] of this.levels) {
+      const sizeMm = this.coarseMm / perCoarse, end = COARSE * perCoarse;
+      const i = Math.floor((x - r - this.left) / sizeMm), j = Math.floor((y - r - this.top) / sizeMm);
+      if (i < 0 || j < 0 || i >= end || j >= end) continue;
+      // Within one cell, whose edges are known.
+      if (i === Math.floor((x + r - this.left) / sizeMm) && j === Math.floor((y + r - this.top) / sizeMm)) return edgesOf(i, j);
+    }
+    return null;
+  }
+  /** From fine to coarse. */
+  private readonly levels: readonly (readonly [number, (i: number, j: number) => Int32Array])[] = [
+    [FINE, (i, j) => this.cellOf(i, j).edges], [MIDDLE, (i, j) => this.middleEdges(i, j)], [1, (i, j) => this.coarseEdges(i, j)],
+  ];
+
   /** Share of the edge at which its nearest point to (x, y) lies: 0 at a, 1 at b. */
   shareAlong(edge: number, x: number, y: number): number {
     const t = ((x - this.ax[edge]) * this.dx[edge] + (y - this.ay[edge]) * this.dy[edge]) * this.inverse[edge];
@@ -129,6 +145,10 @@ export class DistanceField {
   private cellAt(x: number, y: number): Cell | null {
     const i = Math.floor((x - this.left) / this.fineMm), j = Math.floor((y - this.top) / this.fineMm);
     if (!(i >= 0 && j >= 0 && i < COARSE * FINE && j < COARSE * FINE)) return null;
+    return this.cellOf(i, j);
+  }
+
+  private cellOf(i: number, j: number): Cell {
     const at = j * COARSE * FINE + i;
     if (this.fine[at] === 0) this.fine[at] = this.cells.push(this.fillFine(i, j));
     return this.cells[this.fine[at] - 1];
