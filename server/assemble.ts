@@ -51,7 +51,7 @@ export async function assemble(config: Config, log: Logger): Promise<Application
     features,
     pool,
     async work() {
-      const threads = createEnginePool(config.jobThreads);
+      const threads = createEnginePool(config.jobThreads, { inBackground: true });
       const runner = await startRunner({ db, session, queue, events, engine: threads, log, threads: config.jobThreads, delayMs: config.jobDelayMs });
       stops.push(startMaintenance(deps), () => runner.stop(), () => threads.close());
     },

@@ -27,13 +27,15 @@ export interface ExpectedFailure { code: string; message: string; status: number
 /** What a thread that goes on living answers. */
 export type PoolResult = { ok: true; result: unknown } | { ok: false; error: ExpectedFailure };
 
+/** As the shell's `nice` has it. */
+const BACKGROUND_NICE = 10;
 const DEFAULT_LIMIT_MS = 120_000;
 /** Asked to stop, the engine gives its best so far within half a second; whoever needs longer does not listen. */
 const STOP_GRACE_MS = 2_000;
 
 export interface ClosablePool extends EnginePool { close(): Promise<void> }
 
-export function createEnginePool(threads: number): ClosablePool {
+export function createEnginePool(threads: number, { inBackground = false } = {}): ClosablePool {
   const piscina = new Piscina({
     filename: fileURLToPath(new URL('./pool-worker.ts', import.meta.url)),
     execArgv: ['--import', new URL('./register-tsx.mjs', import.meta.url).href],
@@ -41,6 +43,8 @@ export function createEnginePool(threads: number): ClosablePool {
     maxThreads: threads,
     // Loading OpenCV and the fonts takes a second; a thread that has them is worth keeping.
     idleTimeout: 300_000,
+    // Long jobs yield the processors to people's requests.
+    ...(inBackground ? { niceIncrement: BACKGROUND_NICE } : {}),
     resourceLimits: { maxOldGenerationSizeMb: 1536 },
   });
   piscina.on('error', () => undefined);
