@@ -57,9 +57,12 @@ export function outlineContains(outline: Outline, p: Point): boolean {
   return inside;
 }
 
-/** Whether a ring lies inside another that it does not cross. Three of its points vote, since one may touch the other's edge. */
+/** Whether a ring lies inside another that it does not cross. The middles of three edges vote: corners may touch the other ring. */
 export function ringInside(ring: Ring, other: Ring): boolean {
-  const votes = [0, 1, 2].filter((k) => ringContains(other, ring[Math.floor((k * ring.length) / 3)]));
+  const votes = [0, 1, 2].filter((k) => {
+    const i = Math.floor((k * ring.length) / 3), a = ring[i], b = ring[(i + 1) % ring.length];
+    return ringContains(other, { x: (a.x + b.x) / 2, y: (a.y + b.y) / 2 });
+  });
   return votes.length >= 2;
 }
 
