@@ -87,8 +87,10 @@ async function demo(env, own) {
   const begun = join(local, 'demo-begun');
   const { default: pg } = await import('pg');
   // Nobody has used a database whose filling was broken off: it is made anew.
-  if (own && existsSync(begun)) await remakeDatabase(pg, env.DATABASE_URL);
-  else if (!(await isEmpty(pg, env.DATABASE_URL))) return [];
+  if (own && existsSync(begun)) {
+    await remakeDatabase(pg, env.DATABASE_URL);
+    rmSync(join(local, 'files'), { recursive: true, force: true });
+  } else if (!(await isEmpty(pg, env.DATABASE_URL))) return [];
   console.log('Setting up the demo studio …');
   writeFileSync(begun, '');
   const said = await run(['--import', 'tsx', 'server/local/fill-demo.ts'], { ...env, JOBS: 'off', LOG_LEVEL: 'error' });
