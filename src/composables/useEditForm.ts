@@ -1,4 +1,4 @@
-import { computed, reactive, ref, shallowRef, toRaw } from 'vue';
+import { computed, nextTick, reactive, ref, shallowRef, toRaw } from 'vue';
 import { ApiError, wordsOf } from '../api/api-error.ts';
 
 interface EditFormOptions<V extends object, R> {
@@ -13,6 +13,13 @@ interface EditFormOptions<V extends object, R> {
 
 const copy = <T>(value: T): T => structuredClone(toRaw(value));
 const same = (a: unknown, b: unknown) => JSON.stringify(a) === JSON.stringify(b);
+
+/** Goes to the first field that has words beside it, in the form that was sent, so that they are seen and read out. */
+async function focusFirstWrong(): Promise<void> {
+  const form = document.activeElement?.closest('form');
+  await nextTick();
+  form?.querySelector<HTMLElement>('[aria-invalid=true]')?.focus();
+}
 
 /**
  * A form over one thing. A failed save keeps what was typed; a stale edit overwrites nothing: `theirs` holds the row as it is now,
@@ -41,7 +48,10 @@ export function useEditForm<V extends object, R>({ initial, save, version = 0, c
     if (saving.value) return null;
     problem.value = null;
     errors.value = check?.(values) ?? {};
-    if (Object.keys(errors.value).length > 0) return null;
+    if (Object.keys(errors.value).length > 0) {
+      await focusFirstWrong();
+      return null;
+    }
     saving.value = true;
     try {
       const answer = await save(copy(values), rowVersion.value);
@@ -52,6 +62,7 @@ export function useEditForm<V extends object, R>({ initial, save, version = 0, c
       else {
         problem.value = wordsOf(error);
         if (error instanceof ApiError) errors.value = Object.fromEntries(error.errors.map(({ path, message }) => [path, message]));
+        await focusFirstWrong();
       }
       return null;
     } finally {

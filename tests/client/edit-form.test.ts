@@ -1,9 +1,11 @@
 import { afterEach, describe, expect, it, vi } from 'vitest';
+import { defineComponent, h } from 'vue';
 import { ApiError } from '../../src/api/api-error.ts';
+import TextField from '../../src/components/fields/TextField.vue';
 import { useEditForm } from '../../src/composables/useEditForm.ts';
 import { useUnsavedGuard } from '../../src/composables/useUnsavedGuard.ts';
 import { useNotices } from '../../src/stores/notices.ts';
-import { inComponent, settle } from './mount.ts';
+import { inComponent, mountAt, settle } from './mount.ts';
 import type { Mounted } from './mount.ts';
 
 interface Row { name: string; size: { w: number | null }; version: number }
@@ -76,6 +78,28 @@ describe('a form over one thing', () => {
     await second.submit();
     second.takeTheirs({ name: 'Theirs', size: { w: 10 } }, 9);
     expect([second.values.name, second.dirty.value, second.theirs.value]).toEqual(['Theirs', false, null]);
+  });
+});
+
+describe('a form that cannot be sent', () => {
+  it('takes the focus to its first field with words beside it, and ties the words to the field', async () => {
+    mounted = await mountAt(defineComponent({
+      setup() {
+        const { values, errors, submit } = useEditForm({ initial: { name: 'A', note: '' }, save: vi.fn(), check: () => ({ note: 'Say something.' }) });
+        return () => h('form', { onSubmit: (event: Event) => { event.preventDefault(); void submit(); } }, [
+          h(TextField, { label: 'Name', modelValue: values.name, error: errors.value.name }),
+          h(TextField, { label: 'Note', modelValue: values.note, error: errors.value.note }),
+          h('button', { type: 'submit' }, 'Save'),
+        ]);
+      },
+    }));
+    const button = mounted.root.querySelector('button')!;
+    button.focus();
+    button.click();
+    await settle();
+    const field = document.activeElement as HTMLInputElement;
+    expect(mounted.root.querySelector(`label[for="${field.id}"]`)?.textContent).toBe('Note');
+    expect(document.getElementById(field.getAttribute('aria-describedby')!)?.textContent).toBe('Say something.');
   });
 });
 
