@@ -57,7 +57,7 @@ describe('a batch of 24 cards', () => {
     await page.getByText('Wood-mounted: not for the lid').waitFor();
     for (const name of Object.keys(STAMPS)) {
       await page.getByRole('button', { name: `Add ${name}` }).click();
-      await page.getByRole('button', { name: `Take ${name} out` }).waitFor();
+      await page.getByRole('button', { name: `Take out ${name}` }).waitFor();
     }
     await page.getByRole('button', { name: 'Spread the cards evenly' }).click();
     await page.getByText('24 labels on 24 cards.').waitFor();
@@ -167,7 +167,7 @@ describe('the sheet under a person’s hands', () => {
     await page.keyboard.press('Control+z');
     await page.keyboard.press('Control+z');
     await expect.poll(async () => parseFloat(await x().inputValue())).toBeCloseTo(before, 1);
-    await page.getByRole('button', { name: 'Pin' }).focus();
+    await page.getByRole('button', { name: 'Pin', exact: true }).focus();
     await page.keyboard.press('Enter');
     await place(1).getByText('pinned').waitFor();
     await page.getByRole('button', { name: 'Plan the rest round the pin' }).focus();
