@@ -7,7 +7,8 @@ import GeometryFactory from 'jsts/org/locationtech/jts/geom/GeometryFactory.js';
 import MaximumInscribedCircle from 'jsts/org/locationtech/jts/algorithm/construct/MaximumInscribedCircle.js';
 import polylabel from 'polylabel';
 import { describe, expect, it } from 'vitest';
-import { bestFit, dieOutline, usableOutline, type DieGeometry } from '../../server/engine/fit/index.ts';
+import { DIE_SHAPES, startingShape } from '../../server/engine/fit/die-shapes.ts';
+import { bestFit, dieOutline, fitTable, usableOutline, type DieGeometry } from '../../server/engine/fit/index.ts';
 import { outlineBox } from '../../server/engine/geometry/ring.ts';
 import { rotateOutline, translateOutline } from '../../server/engine/geometry/transform.ts';
 import type { Outline, Ring } from '../../server/engine/geometry/types.ts';
@@ -76,7 +77,7 @@ describe('artwork in a label that is not convex', () => {
       const there = bruteBorder(translateOutline(centred(ink), fit.centre.x, fit.centre.y), area, 0.01);
       expect(Math.abs(there - fit.borderMm), `seed ${seed}`).toBeLessThan(0.006);
     }
-  });
+  }, pairs * 1500);
 
   it('is as good when label and artwork are turned by 90°, and wherever the artwork lay before', () => {
     for (let seed = 51; seed <= 60; seed++) {
@@ -155,6 +156,16 @@ describe('artwork in a label that is not convex', () => {
     const fit = bestFit({ rings: [box(50, 4)] }, own(bitten));
     expect(Math.abs(fit.borderMm + 5)).toBeLessThan(PROVEN_MM);
     expect(fit.verdict).toBe('no');
+  });
+});
+
+describe('a fit table of all shapes', () => {
+  it('gives each pair exactly the figures of a fit of its own', () => {
+    const random = seeded(77);
+    const artworks = [randomStar(random, 30, 40, 12, 0.4), randomStar(random, 12, 25, 20, 0.5), { rings: [box(60, 8)] }];
+    const dies = DIE_SHAPES.map((row, i): DieGeometry => ({ shape: startingShape(row.form), ...(i % 2 ? { stitchInsetMm: 1.5 } : {}) }));
+    const table = fitTable(artworks, dies);
+    artworks.forEach((artwork, i) => dies.forEach((die, j) => expect({ ...table[i][j], verdict: '' }).toEqual({ ...bestFit(artwork, die), verdict: '' })));
   });
 });
 
