@@ -14,9 +14,12 @@ import type { PageItem } from './types.ts';
 
 export const NUMBER_MM = 3.6;
 /** Words outside the bed: hinge, corner. */
-const OUTSIDE_MM = 6.5;
+const OUTSIDE_MM = 7;
 const CORNER_ARM_MM = 25;
+/** The corner's mark keeps off the sheet's edge, which scissors follow, and is this wide. */
+const CORNER_GAP_MM = 0.8;
 const CORNER_WIDTH_MM = 2;
+const CORNER_REACH_MM = CORNER_GAP_MM + CORNER_WIDTH_MM;
 const HATCH_MM = 3;
 /** A number stands this far inside its label's cut line, mm. */
 const NUMBER_INSET_MM = 3.6;
@@ -41,9 +44,9 @@ export function bedItems(context: SetupContext, trim: 'sheet' | 'lid'): PageItem
 export function bedRegions({ order: { platform }, frame, places }: SetupContext, trim: 'sheet' | 'lid'): Box[] {
   const bed = { x: 0, y: 0, w: platform.widthMm, h: platform.heightMm };
   const drawn = places.map((place) => place.box);
-  const trimmed = grownBox(trim === 'sheet' ? frame.sheet : frame.lid, CORNER_WIDTH_MM + 0.5);
+  const trimmed = grownBox(trim === 'sheet' ? frame.sheet : frame.lid, CORNER_REACH_MM + 0.4);
   const whole = unionBox([grownBox(bed, OUTSIDE_MM), grownBox(frame.sheet, OUTSIDE_MM), trimmed, ...drawn]);
-  return [whole, unionBox([grownBox(bed, CORNER_WIDTH_MM + 0.5), trimmed, ...drawn]), unionBox([trimmed, ...drawn]), trimmed];
+  return [whole, unionBox([grownBox(bed, CORNER_REACH_MM + 0.4), trimmed, ...drawn]), unionBox([trimmed, ...drawn]), trimmed];
 }
 
 export function cutLineItem({ outline, cut }: LabelShape): PageItem {
@@ -103,27 +106,28 @@ function keepOutItems(box: Box): PageItem[] {
   ];
 }
 
-/** Lies outside the sheet's edges: its inner sides are the edges. */
+/** Lies outside the sheet's edges, along both that touch the corner. */
 export function cornerItems(sheet: Box, corner: NonNullable<SetupContext['order']['platform']['corner']>, caption = 'registration corner'): PageItem[] {
   const left = corner.endsWith('left'), top = corner.startsWith('top');
   const at = { x: left ? sheet.x : sheet.x + sheet.w, y: top ? sheet.y : sheet.y + sheet.h };
   const sx = left ? 1 : -1, sy = top ? 1 : -1;
-  const ell = [[-CORNER_WIDTH_MM, -CORNER_WIDTH_MM], [CORNER_ARM_MM, -CORNER_WIDTH_MM], [CORNER_ARM_MM, 0], [0, 0], [0, CORNER_ARM_MM], [-CORNER_WIDTH_MM, CORNER_ARM_MM]];
+  const near = -CORNER_GAP_MM, far = -CORNER_REACH_MM;
+  const ell = [[far, far], [CORNER_ARM_MM, far], [CORNER_ARM_MM, near], [near, near], [near, CORNER_ARM_MM], [far, CORNER_ARM_MM]];
   return [
     path([ell.map(([x, y]) => ({ x: at.x + sx * x, y: at.y + sy * y }))], 'corner', style.solid),
-    words({ x: at.x, y: top ? at.y - CORNER_WIDTH_MM - 1 : at.y + CORNER_WIDTH_MM + 2.8 }, caption, 2.4, 'caption', { align: left ? 'left' : 'right' }),
+    words({ x: at.x, y: top ? at.y - CORNER_REACH_MM - 0.8 : at.y + CORNER_REACH_MM + 2.6 }, caption, 2.4, 'caption', { align: left ? 'left' : 'right' }),
   ];
 }
 
 function hingeItems(bed: Box, side: Side): PageItem[] {
-  const near = 3.2, far = 3.9;
+  const near = 3.6, far = 4.3;
   const look = { strokeMm: FINE_MM, stroke: INK };
   const upright = side === 'left' || side === 'right';
   const place = (d: number) => ({ left: bed.x - d, right: bed.x + bed.w + d, top: bed.y - d, bottom: bed.y + bed.h + d })[side];
   const along = (d: number) => (upright ? line(place(d), bed.y + bed.h * 0.2, place(d), bed.y + bed.h * 0.8, 'hinge', look) : line(bed.x + bed.w * 0.3, place(d), bed.x + bed.w * 0.7, place(d), 'hinge', look));
   const caption = upright
-    ? words({ x: side === 'left' ? place(4.6) : place(6.4), y: bed.y + bed.h / 2 }, 'hinge', 2.4, 'hinge', { align: 'middle', turnDeg: -90 })
-    : words({ x: bed.x + bed.w / 2, y: side === 'top' ? place(4.6) : place(6.4) }, 'hinge', 2.4, 'hinge', { align: 'middle' });
+    ? words({ x: side === 'left' ? place(5) : place(6.8), y: bed.y + bed.h / 2 }, 'hinge', 2.4, 'hinge', { align: 'middle', turnDeg: -90 })
+    : words({ x: bed.x + bed.w / 2, y: side === 'top' ? place(5) : place(6.8) }, 'hinge', 2.4, 'hinge', { align: 'middle' });
   return [along(near), along(far), caption];
 }
 

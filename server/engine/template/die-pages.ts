@@ -54,7 +54,7 @@ export function diePages(context: SetupContext, face: 'up' | 'down'): PageDescri
       name: `Setup ${number}: dies face ${face}, ${groupName(group)}`, side: context.side,
       heading: face === 'up' ? 'Dies, sheet face up' : 'Dies, sheet face down (mirrored)', notes: notesOf(context, group, face),
     };
-    const regions: Box[] = [grownBox(box, 6.5), grownBox(box, 2.5)];
+    const regions: Box[] = [grownBox(box, 7), grownBox(box, 3.2)];
     return face === 'up' ? drawingPages(context, head, items, regions)
       : drawingPages(context, head, mirrored(items, 'x', sheet.widthMm), regions.map((region) => mirroredBox(region, 'x', sheet.widthMm)));
   });
@@ -112,9 +112,8 @@ function labelItems(context: SetupContext, place: PlaceShapes, label: LabelShape
   const line1 = turns > 1 ? `${place.number} t${turn + 1}` : `${place.number}`;
   return [
     die === null ? { ...cutLineItem(shape), role: label.cut === 'die' ? 'cut-line-other' : 'cut-line' } : path(shape.outline.rings, 'cut-line', style.cutNow),
-    ...place.pieces.flatMap((piece): PageItem[] => (die === null
-      ? [path(piece.ink.rings.map((ring) => ring.map(onSheet)), 'ink', { strokeMm: 0.1, stroke: style.cutLine.stroke })]
-      : inkItems({ ink: mapOutline(piece.ink, onSheet) }, context.labels.sentiments[piece.stampId]?.boxOnly === true))),
+    // Ink of the other passes would only hide which labels are meant.
+    ...(die === null ? [] : place.pieces.flatMap((piece) => inkItems({ ink: mapOutline(piece.roughInk, onSheet) }, context.labels.sentiments[piece.stampId]?.boxOnly === true))),
     words({ x: at.x, y: at.y + 1 }, line1, 3.2, 'number', { align: 'middle', bold: die !== null }),
     ...(turns > 1 ? upArrow({ x: at.x + 5.2, y: at.y }, impressionAngle(turn, turns)) : []),
     ...(die === null ? [] : [words({ x: at.x, y: at.y + 3.6 }, owned > 1 ? `${die.name} (${die.copy})` : die.name, 2, 'caption', { align: 'middle' })]),

@@ -16,7 +16,7 @@ import { cross, FINE_MM, HAIR_MM, INK, path, PALE, rect, words } from './page-it
 import { drawingPages, finishedPage, madeFor, NOTE_MM, pageLayout } from './page-layout.ts';
 import type { PageContext } from './page-layout.ts';
 import { printableBox } from './printer.ts';
-import { FULL_BARS, levelBar, uprightBar } from './scale-check.ts';
+import { FULL_BARS, levelBar, SHORT_BARS, uprightBar } from './scale-check.ts';
 import { shortened, wrapText } from './text-width.ts';
 import type { PageDescription, PageItem, PrinterProfile } from './types.ts';
 
@@ -45,15 +45,17 @@ export function printerTestPage(printer: PrinterProfile, unit: LengthUnit): Page
     words({ x: reach.x + 4, y: reach.y + 13 }, shortened(`${madeFor({ printer, unit, title: '' })} Drawn without correction.`, reach.w - 8, NOTE_MM), NOTE_MM),
     ...lines(`Print at actual size, 100 %. The middle of the cross is drawn ${formatLength(at.x, 'mm')} (${formatLength(at.x, 'in', { inches: 'decimal' })}) from the left edge of the paper and ${formatLength(at.y, 'mm')} (${formatLength(at.y, 'in', { inches: 'decimal' })}) from its top. Measure both, and the bars, and type what the ruler says.`, at.x + 11, at.y - 12, right - at.x - 15),
     ...lines('1. Bars, level and upright: what do they measure? 2. Cross: how far from the left and from the top edge? 3. Frame: a side that is missing lies beyond what the printer reaches; make that margin larger.', besides, barsTop, right - besides - 4),
-    ...levelBars(printer, at.x < right - 116 ? at.x : right - 116, levelTop),
+    ...levelBars(Math.max(reach.x + 2, Math.min(at.x, right - 116)), levelTop, right),
     ...(upright ? [...uprightBar(at.x - 8, barsTop, FULL_BARS[0]), ...uprightBar(at.x + 4, barsTop, FULL_BARS[1])] : []),
     ...cardItems(besides, cardTop, right),
   ];
   return { name: 'Printer test page', widthMm, heightMm, items };
 }
 
-function levelBars(_printer: PrinterProfile, x: number, y: number): PageItem[] {
-  return [...levelBar(x, y, FULL_BARS[0]), ...levelBar(x, y + 6, FULL_BARS[1])];
+/** Half as long where the paper is too narrow; the other half is measured upright. */
+function levelBars(x: number, y: number, right: number): PageItem[] {
+  const bars = x + 115 > right ? SHORT_BARS : FULL_BARS;
+  return bars.flatMap((bar, i) => levelBar(x, y + 6 * i, bar));
 }
 
 function cardItems(x: number, y: number, right: number): PageItem[] {

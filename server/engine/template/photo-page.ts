@@ -16,6 +16,7 @@ const WORDS_MM = 2.3;
 const WORDS_LINE_MM = 2.9;
 /** Height of both bars with their ticks, mm. */
 const BARS_MM = 6.2;
+const BETWEEN_MM = 2;
 
 export function photoPage(printer: PrinterProfile): PageDescription {
   const context: PageContext = { printer, unit: 'mm', title: '' };
@@ -52,7 +53,9 @@ function barItems(reachBelow: number, middle: { x: number; y: number }): PageIte
   // One above the other where there is room; else side by side between the corner markers, as far from all of them as can be.
   if (room >= BARS_MM) return moved([...levelBar(-50, y, metric), ...levelBar(-50, y + 3.6, inch)], middle.x, middle.y);
   const rowY = Math.min(y, reachBelow - 1.3);
-  return moved([...levelBar(-104, rowY, metric).slice(0, -1), ...levelBar(-1.5, rowY, inch).slice(0, -1)], middle.x, middle.y)
+  const start = -(metric.lengthMm + BETWEEN_MM + inch.lengthMm) / 2;
+  // Their captions have no room at their ends.
+  return moved([...levelBar(start, rowY, metric).slice(0, -1), ...levelBar(start + metric.lengthMm + BETWEEN_MM, rowY, inch).slice(0, -1)], middle.x, middle.y)
     .concat(moved([words({ x: -76, y: lowest - 1 }, 'bars below: 100 mm and 4 in', WORDS_MM, 'caption')], middle.x, middle.y));
 }
 

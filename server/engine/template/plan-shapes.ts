@@ -13,12 +13,15 @@ import { outlineHull } from '../geometry/hull.ts';
 import { boxCentre, outlineBox, ringBox } from '../geometry/ring.ts';
 import { mapOutline, rotatePoint, translateOutline } from '../geometry/transform.ts';
 import type { Box, Outline, Point, Ring } from '../geometry/types.ts';
+import { simplifyRing } from '../reading/simplify.ts';
 
 export interface LabelShape { lineId: string; dieId: string; cut: NonNullable<RunLine['cut']>; outline: Outline }
 export interface PieceShape {
   stampId: string;
   copy: number;
   ink: Outline;
+  /** To within ROUGH_MM, for pages on which a stamp is only to be known again. */
+  roughInk: Outline;
   body: Ring;
   /** Two short lines each, beyond the body. */
   baselineTicks: [Point, Point][];
@@ -34,17 +37,20 @@ export interface PlaceShapes {
 }
 export interface PlanShapes { order: RunOrder; line(id: string): RunLine; place(placement: Placement, number: number): PlaceShapes }
 
-interface StampShape { ink: Outline; body: Ring; baselineY: number }
+interface StampShape { ink: Outline; roughInk: Outline; body: Ring; baselineY: number }
 
 /** Ticks begin this far outside the body and are this long, mm. */
 const TICK_GAP_MM = 0.8;
 const TICK_MM = 4.5;
+/** Points that a printer cannot tell apart are left out, mm: half a dot at 600 dpi is 0.021. */
+const DRAWN_MM = 0.015;
+const ROUGH_MM = 0.045;
 /** Feet of letters that stand on one line differ by less, mm. */
 const SAME_LINE_MM = 0.35;
 
 export function planShapes(order: RunOrder): PlanShapes {
   const lines = byId(order.lines), stamps = byId(order.stamps), dies = byId(order.dies);
-  const cutLine = cached((id: string) => dieOutline(found(dies, id, 'die').geometry));
+  const cutLine = cached((id: string) => lighter(dieOutline(found(dies, id, 'die').geometry)));
   const stamp = cached((id: string) => stampShape(found(stamps, id, 'stamp')));
   const line = (id: string) => found(lines, id, 'line');
   return {
@@ -66,11 +72,15 @@ export function planShapes(order: RunOrder): PlanShapes {
   };
 }
 
+function lighter({ rings }: Outline, toleranceMm = DRAWN_MM): Outline {
+  return { rings: rings.map((ring) => simplifyRing(ring, toleranceMm)) };
+}
+
 /** About the middle of the ink's box. */
 function stampShape({ artwork, trimMm }: RunOrder['stamps'][number]): StampShape {
   const middle = boxCentre(outlineBox(artwork));
-  const ink = translateOutline(artwork, -middle.x, -middle.y);
-  return { ink, body: growConvex(outlineHull(ink), trimMm), baselineY: baselineOf(ink) };
+  const ink = lighter(translateOutline(artwork, -middle.x, -middle.y));
+  return { ink, roughInk: lighter(ink, ROUGH_MM), body: growConvex(outlineHull(ink), trimMm), baselineY: baselineOf(ink) };
 }
 
 /**
@@ -93,7 +103,7 @@ function pieceShape(stampId: string, copy: number, stamp: StampShape, place: (p:
   const tick = (x1: number, y1: number, x2: number, y2: number): [Point, Point] => [place({ x: x1, y: y1 }), place({ x: x2, y: y2 })];
   const left = x - TICK_GAP_MM, right = x + w + TICK_GAP_MM, top = y - TICK_GAP_MM, bottom = y + h + TICK_GAP_MM;
   return {
-    stampId, copy, ink: mapOutline(stamp.ink, place), body: stamp.body.map(place),
+    stampId, copy, ink: mapOutline(stamp.ink, place), roughInk: mapOutline(stamp.roughInk, place), body: stamp.body.map(place),
     baselineTicks: [tick(left - TICK_MM, stamp.baselineY, left, stamp.baselineY), tick(right, stamp.baselineY, right + TICK_MM, stamp.baselineY)],
     centreTicks: [tick(0, top - TICK_MM, 0, top), tick(0, bottom, 0, bottom + TICK_MM)],
   };

@@ -1,3 +1,5 @@
+// A declaration file that no module imports must be named where it is needed, or the kernels alone would not see it.
+// eslint-disable-next-line @typescript-eslint/triple-slash-reference -- an ambient module cannot be imported by path
 /// <reference path="./qrcode-core.d.ts" />
 /**
  * A QR code (ISO/IEC 18004) as squares: the dark modules of each row side by side are one ring. The encoding is the package qrcode's; only its core

@@ -14,6 +14,7 @@ import type { CanvasElement, Content, TDocumentDefinitions } from 'pdfmake/inter
 import { POINTS_PER_INCH, MM_PER_INCH } from '../geometry/units.ts';
 import { evenOddAsNonZero } from './fill-rings.ts';
 import { INK } from './page-items.ts';
+import { isCommon, textWidth } from './text-width.ts';
 import type { PageDescription, PageDocument, PagePath, PageText } from './types.ts';
 
 const PT_PER_MM = POINTS_PER_INCH / MM_PER_INCH;
@@ -22,7 +23,9 @@ type Family = keyof typeof FAMILIES;
 const STYLES = { normal: 400, bold: 600 } as const;
 type Style = keyof typeof STYLES;
 
-interface Face { family: Family; style: Style; path: string; font: Font }
+interface Face { family: Family; style: Style; path: string; /** Parsed when first asked for: inflating it takes longer than most documents. */ font(): Font }
+/** Of Work Sans, in parts of the size. */
+const ASCENDER = 0.93;
 interface PdfMaker {
   setFonts(fonts: Record<string, Record<string, string>>): void;
   setUrlAccessPolicy(allow: (url: string) => boolean): void;
@@ -53,14 +56,19 @@ export async function renderPdf(document: PageDocument): Promise<Uint8Array> {
   return new Uint8Array(await output.getBuffer());
 }
 
-/** Read anew each time: a few tens of kB, and the engine keeps no state. */
+/** For one document: the engine keeps no state. */
 function loadFaces(): Face[] {
   const names = Object.keys(FAMILIES) as Family[], styles = Object.keys(STYLES) as Style[];
   return names.flatMap((family) => styles.map((style) => {
     const path = fileURLToPath(import.meta.resolve(`@fontsource/work-sans/files/work-sans-${FAMILIES[family]}-${STYLES[style]}-normal.woff`));
-    const bytes = readFileSync(path);
-    return { family, style, path, font: opentype.parse(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength) as ArrayBuffer) };
+    let parsed: Font | undefined;
+    return { family, style, path, font: () => (parsed ??= parseFont(path)) };
   }));
+}
+
+function parseFont(path: string): Font {
+  const bytes = readFileSync(path);
+  return opentype.parse(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength) as ArrayBuffer);
 }
 
 /** The package is one object for the whole process: it is always set to the same values. */
@@ -95,34 +103,31 @@ function pageContent(page: PageDescription, faces: readonly Face[], breakBefore:
 
 function vectors(item: PagePath): CanvasElement[] {
   const rings = item.rings.filter((ring) => ring.length > 1);
-  const shared = { lineJoin: 'round' as const, lineCap: 'butt' as const };
-  const drawn: CanvasElement[] = [];
-  if (item.fill !== undefined && rings.length > 0) {
-    if (rings.length === 1) drawn.push({ type: 'polyline', points: rings[0].map(toPoints), closePath: true, color: item.fill, ...shared });
-    // The package's types do not know its own path element.
-    else drawn.push({ type: 'path', d: evenOddAsNonZero(rings).map((ring) => `M${ring.map((p) => `${pt(p.x)} ${pt(p.y)}`).join('L')}Z`).join(''), color: item.fill, ...shared } as unknown as CanvasElement);
-  }
-  if (item.strokeMm === undefined) return drawn;
-  const look = {
-    lineWidth: Math.max(pt(item.strokeMm), 0.01), lineColor: item.stroke ?? '#000000', ...shared,
+  if (rings.length === 0) return [];
+  const shared = { lineJoin: 'round' as const, lineCap: 'butt' as const, ...(item.fill === undefined ? {} : { color: item.fill }) };
+  const look = item.strokeMm === undefined ? shared : {
+    ...shared, lineWidth: Math.max(pt(item.strokeMm), 0.01), lineColor: item.stroke ?? '#000000',
     ...(item.dashMm ? { dash: { length: pt(item.dashMm[0]), space: pt(item.dashMm[1] ?? item.dashMm[0]) } } : {}),
   };
-  for (const ring of rings) drawn.push({ type: 'polyline', points: ring.map(toPoints), closePath: item.closed, ...look });
-  return drawn;
+  if (item.fill === undefined && item.strokeMm === undefined) return [];
+  if (rings.length === 1) return [{ type: 'polyline', points: rings[0].map(toPoints), closePath: item.closed, ...look }];
+  // One path for all rings; the package's types do not know its own path element.
+  const turned = item.fill === undefined ? rings : evenOddAsNonZero(rings);
+  const d = turned.map((ring) => `M${ring.map((p) => `${pt(p.x)} ${pt(p.y)}`).join('L')}${item.closed ? 'Z' : ''}`).join('');
+  return [{ type: 'path', d, ...look } as unknown as CanvasElement];
 }
 
 function textContent(item: PageText, faces: readonly Face[], page: PageDescription): Content {
   const style: Style = item.bold ? 'bold' : 'normal';
   const runs = splitByFace(item.text, faces.filter((face) => face.style === style));
   const size = item.sizeMm * PT_PER_MM;
-  const width = runs.reduce((sum, { text, face }) => sum + face.font.getAdvanceWidth(text, size), 0);
+  const width = runs.reduce((sum, { text, face }) => sum + (face.family === 'Work Sans' && [...text].every(isCommon) ? textWidth(text, size, item.bold) : face.font().getAdvanceWidth(text, size)), 0);
   const share = { left: 0, middle: 0.5, right: 1 }[item.align];
   if (item.turnDeg) return turnedText(item, runs.map((run) => run.text).join(''), width * share, page);
-  const { font } = runs[0]?.face ?? faces[0];
   return {
     text: runs.map(({ text, face }) => ({ text, font: face.family })),
     fontSize: size, bold: item.bold === true, noWrap: true, preserveLeadingSpaces: true,
-    absolutePosition: { x: item.at.x * PT_PER_MM - width * share, y: item.at.y * PT_PER_MM - (font.ascender / font.unitsPerEm) * size },
+    absolutePosition: { x: item.at.x * PT_PER_MM - width * share, y: item.at.y * PT_PER_MM - ASCENDER * size },
   };
 }
 
@@ -141,7 +146,7 @@ function turnedText(item: PageText, text: string, back: number, page: PageDescri
 function splitByFace(text: string, faces: readonly Face[]): { text: string; face: Face }[] {
   const runs: { text: string; face: Face }[] = [];
   for (const character of text) {
-    const face = faces.find(({ font }) => font.hasChar(character));
+    const face = isCommon(character) ? faces[0] : faces.find(({ font }) => font().hasChar(character));
     const last = runs.at(-1);
     if (last && last.face === (face ?? faces[0])) last.text += face ? character : '?';
     else runs.push({ text: face ? character : '?', face: face ?? faces[0] });

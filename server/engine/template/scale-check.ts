@@ -5,7 +5,7 @@
 import { MM_PER_INCH } from '../geometry/units.ts';
 import type { Box } from '../geometry/types.ts';
 import { FINE_MM, INK, line, rect, style, words } from './page-items.ts';
-import { textWidth, wrapText } from './text-width.ts';
+import { wrapText } from './text-width.ts';
 import type { PageItem } from './types.ts';
 
 const BAR_MM = 1.2;
@@ -48,6 +48,7 @@ export function uprightBar(x: number, y: number, bar: Bar): PageItem[] {
 }
 
 export const FULL_BARS = bars(false);
+export const SHORT_BARS = bars(true);
 
 /** At the bottom of `room` (or its left side); the second box is what is left of the room. */
 export function scaleCheck(room: Box, madeFor: string): { items: PageItem[]; left: Box } {
@@ -80,9 +81,4 @@ export function scaleCheck(room: Box, madeFor: string): { items: PageItem[]; lef
   }
   const items = [...barItems, ...lines.map((l, i) => words({ x: room.x, y: barsTop - (lines.length - 1 - i) * LINE_MM - 1 }, l, CAPTION_MM, 'caption'))];
   return { items, left: { ...room, h: room.h - 2 * ROW_MM - lines.length * LINE_MM - 2 } };
-}
-
-/** For callers that break lines themselves. */
-export function captionWidth(text: string): number {
-  return textWidth(text, CAPTION_MM);
 }
