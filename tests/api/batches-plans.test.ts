@@ -131,6 +131,29 @@ describe('versions of a plan', () => {
     expect(checkLayout(around.runs[0].order, around.runs[0].plan.setups)).toEqual([]);
   });
 
+  it('keep every place of a layout made by hand, and count it through: the same labels, presses and cuts follow', async () => {
+    const batch = await ready('By hand', { 'Thank you': 2, Hello: 3 });
+    const plan = await planned(batch.id);
+    const [run] = plan.runs;
+    const pinned = run.plan.setups.flatMap((setup: { placements: object[] }, at: number) => setup.placements.map((placement) => ({ setup: at, placement })));
+    pinned[0] = { setup: 0, placement: { ...pinned[0].placement, y: pinned[0].placement.y + 0.125 } };
+    const kept = await planned(batch.id, { byHand: true, pinned: [{ cardstockId: run.cardstock.id, pinned }] });
+    expect(kept).toMatchObject({ madeHow: 'by-hand', labels: 5 });
+    expect(kept.runs[0].unplaced).toEqual([]);
+    for (const { setup, placement } of pinned) {
+      const stands = kept.runs[0].plan.setups[setup].placements.find((p: { id: number }) => p.id === placement.id);
+      expect(stands).toMatchObject({ x: placement.x, y: placement.y, rotationDeg: placement.rotationDeg, stamps: placement.stamps });
+    }
+  });
+
+  it('say why they are so, and what one more die would save only where the planner found it', async () => {
+    const batch = await ready('Explained', { 'Thank you': 2, Hello: 6, 'With love': 6 });
+    const plan = await planned(batch.id);
+    // Three labels of the smallest die, of which one is owned: each needs a pass of its own, so a second die saves some.
+    expect(plan.runs[0].explanations).toContain('“Hello” is wanted 6 times from one stamp: that alone takes 6 presses.');
+    expect(plan.runs[0].explanations.some((words: string) => /^One more copy of the die “55 × 22 mm” would save .*\d+ cut passes/.test(words))).toBe(true);
+  });
+
   it('give printing and the bench the names of everything, as they were', async () => {
     const batch = await ready('Named', { 'Thank you': 1 });
     const plan = await planned(batch.id);

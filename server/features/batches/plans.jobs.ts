@@ -9,6 +9,7 @@ import type { Deps } from '../../feature.ts';
 import type { JobContext, JobDefinition } from '../../jobs/types.ts';
 import { orderParts } from './batch-parts.ts';
 import { advanceBatch, findBatch, isStopAsked, lockBatch } from './batches.queries.ts';
+import { reasons, whatIfs } from './plan-advice.ts';
 import { emptyPlan } from './plan-totals.ts';
 import { insertPlan } from './plans.queries.ts';
 import type { StoredRun } from './plans.queries.ts';
@@ -85,7 +86,18 @@ async function planRun(run: AssembledRun, payload: PlanPayload, slice: Slice): P
     const other = await search(withAim(order, kind), { ...slice, from: slice.from + step * (2 + i), share: step });
     alternatives.push({ kind, plan: kind === 'cut-passes' ? repriced(other, paceOf(order), plan.atLeast) : other });
   }
-  return { ...kept, order, plan, explanations: [], alternatives: [{ kind: order.aim, plan }, ...alternatives] };
+  return { ...kept, order, plan, explanations: [...reasons(order, plan, run.names), ...(await advice(order, plan, run, slice))], alternatives: [{ kind: order.aim, plan }, ...alternatives] };
+}
+
+/** What would help; nothing is looked for once the person has stopped. */
+async function advice(order: RunOrder, plan: RunPlan, run: AssembledRun, { context, finish }: Slice): Promise<string[]> {
+  const found: string[] = [];
+  for (const whatIf of whatIfs(order, plan, run.names)) {
+    if (finish.aborted) break;
+    const words = whatIf.words(await context.engine.run<RunPlan>('planGangRun', { order: whatIf.order }, { finish, onProgress: () => undefined }));
+    if (words !== null) found.push(words);
+  }
+  return found;
 }
 
 function withAim(order: RunOrder, kind: AlternativeKind): RunOrder {
