@@ -100,7 +100,7 @@ describe('by keyboard alone', () => {
 
     await page.getByRole('link', { name: 'Printers' }).focus();
     await page.keyboard.press('Enter');
-    await page.getByRole('heading', { name: 'Printers' }).waitFor();
+    await page.getByRole('heading', { name: 'Printers', level: 1 }).waitFor();
     await page.getByRole('button', { name: 'Bin' }).focus();
     await page.keyboard.press('Enter');
     await page.getByText('Deleted things stay here for 30 days').waitFor();
@@ -135,7 +135,7 @@ describe('an address', () => {
 /** Pages of account, studio and gear, each with what shows that it has come. */
 const PAGES = [
   ['gear/platforms', 'Stamping platforms'], ['gear/platforms/new', 'Add a platform'], ['gear/printers/new', 'Add a printer'], ['gear/cardstocks/new', 'Add a cardstock'], ['gear/inks/new', 'Add an ink'],
-  ['studio/members', 'People'], ['studio/settings', 'Settings'], ['studio/activity', 'Activity'], ['search?search=a', 'Search'], ['../../account', 'Account'],
+  ['studio/members', 'People'], ['studio/settings', 'Settings'], ['studio/activity', 'Activity'], ['studio/bin', 'Bin'], ['search?search=a', 'Search'], ['../../account', 'Account'],
 ] as const;
 
 describe('every page', () => {
