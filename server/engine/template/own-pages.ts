@@ -6,6 +6,7 @@
  */
 import { dieOutline, usableOutline } from '../fit/die-outline.ts';
 import type { DieGeometry } from '../fit/types.ts';
+import { growOutline } from '../geometry/offset.ts';
 import { outlineBox } from '../geometry/ring.ts';
 import { translateOutline } from '../geometry/transform.ts';
 import type { Box, Point } from '../geometry/types.ts';
@@ -115,6 +116,7 @@ function dieItems({ name, geometry }: { name: string; geometry: DieGeometry }, a
   const size = `${formatSize(w, h, unit)}${geometry.stitchInsetMm ? `, stitch line ${formatLength(geometry.stitchInsetMm, unit)} inside` : ''}`;
   return [
     path(cut.rings, 'die', { strokeMm: FINE_MM, stroke: INK }),
+    ...(rim > 0 ? [path(growOutline(cut, rim).rings, 'body', { strokeMm: 0.1, stroke: PALE })] : []),
     ...(stitch.length === 0 ? [] : [path(translateOutline({ rings: stitch }, at.x, at.y).rings, 'body', { strokeMm: HAIR_MM, stroke: PALE, dashMm: [1, 0.8] })]),
     words({ x, y: y + h + rim + 3.4 }, shortened(name, Math.max(w, 28), 2.7, true), 2.7, 'caption', { bold: true }),
     words({ x, y: y + h + rim + 6.6 }, shortened(size, Math.max(w, 28), 2.3), 2.3, 'caption'),

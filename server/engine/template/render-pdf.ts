@@ -2,7 +2,7 @@
  * Page descriptions as PDF 1.7 (ISO 32000-1), by pdfmake. On the server only: it reads the fonts that are shipped with the application.
  *
  * Coordinates are rounded to 0.01 pt (0.0035 mm). The document asks not to be scaled (/PrintScaling /None, §12.2) and to show its title. Nothing is ever fetched:
- * addresses are refused, and so are local files but for the fonts. All pages have one size. Characters that Work Sans does not have are
+ * the fonts are handed over as bytes, and addresses and local files are refused. All pages have one size. Characters that Work Sans does not have are
  * written as “?”. No clock is read: the same pages give the same bytes but for what pdfmake stamps on them.
  */
 import { readFileSync } from 'node:fs';
@@ -15,6 +15,7 @@ import { POINTS_PER_INCH, MM_PER_INCH } from '../geometry/units.ts';
 import { evenOddAsNonZero } from './fill-rings.ts';
 import { INK } from './page-items.ts';
 import { isCommon, textWidth } from './text-width.ts';
+import { sfntOf } from './woff.ts';
 import type { PageDescription, PageDocument, PagePath, PageText } from './types.ts';
 
 const PT_PER_MM = POINTS_PER_INCH / MM_PER_INCH;
@@ -23,17 +24,30 @@ type Family = keyof typeof FAMILIES;
 const STYLES = { normal: 400, bold: 600 } as const;
 type Style = keyof typeof STYLES;
 
-interface Face { family: Family; style: Style; path: string; /** Parsed when first asked for: inflating it takes longer than most documents. */ font(): Font }
+interface Face { family: Family; style: Style; name: string; bytes: Buffer; /** Parsed when first asked for: most documents need no more than the widths in text-width.ts. */ font(): Font }
 /** Of Work Sans, in parts of the size. */
 const ASCENDER = 0.93;
 interface PdfMaker {
+  virtualfs: { existsSync(name: string): boolean; writeFileSync(name: string, bytes: Buffer): void };
   setFonts(fonts: Record<string, Record<string, string>>): void;
   setUrlAccessPolicy(allow: (url: string) => boolean): void;
   setLocalAccessPolicy(allow: (path: string) => boolean): void;
   createPdf(definition: TDocumentDefinitions, options?: object): PdfOutput;
 }
 interface PdfOutput { getStream(): Promise<PdfStream>; getBuffer(): Promise<Buffer> }
-interface PdfStream { _root: { data: { ViewerPreferences?: { data: Record<string, unknown> } } } }
+/** What is used of the document that pdfmake has drawn and not yet ended. */
+interface PdfStream {
+  _root: { data: { ViewerPreferences?: { data: Record<string, unknown> } } };
+  _font: unknown;
+  provideFont(family: string, bold: boolean, italics: boolean): unknown;
+  switchToPage(index: number): void;
+  save(): void;
+  restore(): void;
+  rotate(angleDeg: number, options: { origin: [number, number] }): void;
+  fontSize(size: number): void;
+  fillColor(colour: string): void;
+  text(text: string, x: number, y: number, options: { lineBreak: false }): void;
+}
 
 export async function renderPdf(document: PageDocument): Promise<Uint8Array> {
   const faces = loadFaces();
@@ -48,8 +62,9 @@ export async function renderPdf(document: PageDocument): Promise<Uint8Array> {
     info: { title: document.title, subject: 'Templates at actual size', creator: 'Inkmuster', producer: 'Inkmuster' },
     defaultStyle: { font: 'Work Sans', color: INK, lineHeight: 1 },
     content: document.pages.length === 0 ? [{ text: '' }] : document.pages.flatMap((page, i) => pageContent(page, faces, i > 0)),
-  });
+  }, { bufferPages: true });
   const stream = await output.getStream();
+  document.pages.forEach((page, i) => drawTurned(stream, i, page, faces));
   const preferences = stream._root.data.ViewerPreferences;
   if (!preferences) throw new Error('The PDF writer made no viewer preferences; it would be scaled by some printers.');
   preferences.data.PrintScaling = 'None';
@@ -60,26 +75,22 @@ export async function renderPdf(document: PageDocument): Promise<Uint8Array> {
 function loadFaces(): Face[] {
   const names = Object.keys(FAMILIES) as Family[], styles = Object.keys(STYLES) as Style[];
   return names.flatMap((family) => styles.map((style) => {
-    const path = fileURLToPath(import.meta.resolve(`@fontsource/work-sans/files/work-sans-${FAMILIES[family]}-${STYLES[style]}-normal.woff`));
+    const name = `work-sans-${FAMILIES[family]}-${STYLES[style]}-normal.woff`;
+    const bytes = sfntOf(readFileSync(fileURLToPath(import.meta.resolve(`@fontsource/work-sans/files/${name}`))));
     let parsed: Font | undefined;
-    return { family, style, path, font: () => (parsed ??= parseFont(path)) };
+    return { family, style, name, bytes, font: () => (parsed ??= opentype.parse(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength) as ArrayBuffer)) };
   }));
-}
-
-function parseFont(path: string): Font {
-  const bytes = readFileSync(path);
-  return opentype.parse(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength) as ArrayBuffer);
 }
 
 /** The package is one object for the whole process: it is always set to the same values. */
 function preparedMaker(faces: readonly Face[]): PdfMaker {
   const maker = pdfmake as unknown as PdfMaker;
-  const shipped = new Set(faces.map((face) => face.path));
+  for (const { name, bytes } of faces) if (!maker.virtualfs.existsSync(name)) maker.virtualfs.writeFileSync(name, bytes);
   const fonts: Record<string, Record<string, string>> = {};
-  for (const { family, style, path } of faces) (fonts[family] ??= {})[style] = path;
+  for (const { family, style, name } of faces) (fonts[family] ??= {})[style] = name;
   maker.setFonts(fonts);
   maker.setUrlAccessPolicy(() => false);
-  maker.setLocalAccessPolicy((path) => shipped.has(path));
+  maker.setLocalAccessPolicy(() => false);
   return maker;
 }
 
@@ -92,9 +103,9 @@ function pageContent(page: PageDescription, faces: readonly Face[], breakBefore:
   };
   for (const item of page.items) {
     if (item.kind === 'path') canvas.push(...vectors(item));
-    else {
+    else if (!item.turnDeg) {
       flush();
-      content.push(textContent(item, faces, page));
+      content.push(textContent(item, faces));
     }
   }
   flush();
@@ -117,29 +128,46 @@ function vectors(item: PagePath): CanvasElement[] {
   return [{ type: 'path', d, ...look } as unknown as CanvasElement];
 }
 
-function textContent(item: PageText, faces: readonly Face[], page: PageDescription): Content {
-  const style: Style = item.bold ? 'bold' : 'normal';
-  const runs = splitByFace(item.text, faces.filter((face) => face.style === style));
-  const size = item.sizeMm * PT_PER_MM;
-  const width = runs.reduce((sum, { text, face }) => sum + (face.family === 'Work Sans' && [...text].every(isCommon) ? textWidth(text, size, item.bold) : face.font().getAdvanceWidth(text, size)), 0);
-  const share = { left: 0, middle: 0.5, right: 1 }[item.align];
-  if (item.turnDeg) return turnedText(item, runs.map((run) => run.text).join(''), width * share, page);
+function textContent(item: PageText, faces: readonly Face[]): Content {
+  const { runs, width, size } = measured(item, faces);
   return {
     text: runs.map(({ text, face }) => ({ text, font: face.family })),
     fontSize: size, bold: item.bold === true, noWrap: true, preserveLeadingSpaces: true,
-    absolutePosition: { x: item.at.x * PT_PER_MM - width * share, y: item.at.y * PT_PER_MM - ASCENDER * size },
+    absolutePosition: { x: item.at.x * PT_PER_MM - width * SHARE[item.align], y: item.at.y * PT_PER_MM - ASCENDER * size },
   };
 }
 
-/** The layout knows level lines only; a turned word goes in as a drawing, still as text. */
-function turnedText(item: PageText, text: string, back: number, page: PageDescription): Content {
-  const width = page.widthMm * PT_PER_MM, height = page.heightMm * PT_PER_MM;
-  const x = item.at.x * PT_PER_MM, y = item.at.y * PT_PER_MM;
-  const escaped = text.replace(/&/g, '&amp;').replace(/</g, '&lt;').replace(/>/g, '&gt;');
-  return {
-    svg: `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${height}" viewBox="0 0 ${width} ${height}"><text transform="translate(${x} ${y}) rotate(${item.turnDeg})" x="${-back}" y="0" font-family="Work Sans" font-size="${item.sizeMm * PT_PER_MM}" font-weight="${item.bold ? 'bold' : 'normal'}" fill="${INK}">${escaped}</text></svg>`,
-    width, height, absolutePosition: { x: 0, y: 0 },
-  };
+const SHARE = { left: 0, middle: 0.5, right: 1 };
+
+function measured(item: PageText, faces: readonly Face[]): { runs: { text: string; face: Face; width: number }[]; width: number; size: number } {
+  const style: Style = item.bold ? 'bold' : 'normal';
+  const size = item.sizeMm * PT_PER_MM;
+  const runs = splitByFace(item.text, faces.filter((face) => face.style === style)).map(({ text, face }) => ({
+    text, face, width: face.family === 'Work Sans' && [...text].every(isCommon) ? textWidth(text, size, item.bold) : face.font().getAdvanceWidth(text, size),
+  }));
+  return { runs, width: runs.reduce((sum, run) => sum + run.width, 0), size };
+}
+
+/** The layout knows level lines only: turned words are written on the finished pages. */
+function drawTurned(stream: PdfStream, index: number, page: PageDescription, faces: readonly Face[]): void {
+  const turned = page.items.filter((item): item is PageText => item.kind === 'text' && Boolean(item.turnDeg));
+  if (turned.length === 0) return;
+  stream.switchToPage(index);
+  for (const item of turned) {
+    const { runs, width, size } = measured(item, faces);
+    const at = { x: item.at.x * PT_PER_MM, y: item.at.y * PT_PER_MM };
+    let x = at.x - width * SHARE[item.align];
+    stream.save();
+    stream.rotate(item.turnDeg ?? 0, { origin: [at.x, at.y] });
+    stream.fillColor(INK);
+    for (const run of runs) {
+      stream._font = stream.provideFont(run.face.family, item.bold === true, false);
+      stream.fontSize(size);
+      stream.text(run.text, x, at.y - ASCENDER * size, { lineBreak: false });
+      x += run.width;
+    }
+    stream.restore();
+  }
 }
 
 /** Runs of characters that one face has, the main one first. */
