@@ -27,17 +27,16 @@ describe('distance field', () => {
 
   it('knows every edge that can be nearest within a reach', () => {
     const random = seeded(5), outline = randomStar(random, 80, 60, 40, 0.3), field = new DistanceField(outline);
-    let told = 0;
+    let few = 0;
     for (let i = 0; i < 300; i++) {
       const x = random() * 60, y = random() * 40, near = field.candidatesWithin(x, y, 0.4);
-      if (near === null) continue;
-      told++;
+      if (near.length < 40) few++;
       for (let k = 0; k < 12; k++) {
         const p = { x: x + 0.4 * Math.cos(k), y: y + 0.4 * Math.sin(k) };
         expect(Math.sqrt(Math.min(...[...near].map((e) => field.distSq(e, p.x, p.y))))).toBeCloseTo(Math.abs(field.signed(p.x, p.y)), 9);
       }
     }
-    expect(told).toBeGreaterThan(150);
+    expect(few).toBeGreaterThan(150);
   });
 
   it('takes points and strokes, which have no inside', () => {

@@ -85,7 +85,6 @@ function addOutsideBound(field: DistanceField, near: number, px: number, py: num
   const d = -signed;
   if (d < TOUCHING_MM) return;
   const candidates = field.candidatesWithin(px, py, r);
-  if (candidates === null) return;
   const [gx, gy] = slopeFrom(field, near, px, py, d);
   let err = 0;
   for (let k = 0; k < candidates.length; k++) {

@@ -159,11 +159,11 @@ function swallowedBound({ area, ink }: Pose, x: number, y: number, reach: number
 
 /** Pairs are worth their rows in squares this much smaller than the border; in larger ones only the hull is. */
 const SMALL_SQUARE_SHARE = 0.2;
-/** Likewise where ink is outside. */
+/** At least, where ink is outside: its rows hold in wider squares, too. */
 const SMALL_SQUARE_MM = 1.5;
 
 function addHullOrPairs(s: Pose, x: number, y: number, border: number, r: number, rows: BorderConstraints): void {
-  if (r < (border > 0 ? border * SMALL_SQUARE_SHARE : SMALL_SQUARE_MM)) { addLocalBounds(s, x, y, border, r, rows, false); return; }
+  if (r < Math.max(Math.abs(border) * SMALL_SQUARE_SHARE, border > 0 ? 0 : SMALL_SQUARE_MM)) { addLocalBounds(s, x, y, border, r, rows, false); return; }
   addHullBounds(s.hull, x, y, border + 2 * r, rows);
   addConstraint(rows, 0, 0, 1, border + r);
 }

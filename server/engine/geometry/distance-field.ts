@@ -94,8 +94,8 @@ export class DistanceField {
     return cell === null ? this.all : cell.edges;
   }
 
-  /** All edges that can be nearest to some place within r of the point; null where r is too wide to tell cheaply. */
-  candidatesWithin(x: number, y: number, r: number): Int32Array | null {
+  /** All edges that can be nearest to some place within r of the point, from the smallest cell that holds them all. */
+  candidatesWithin(x: number, y: number, r: number): Int32Array {
     for (const [perCoarse, edgesOf] of this.levels) {
       const sizeMm = this.coarseMm / perCoarse, end = COARSE * perCoarse;
       const i = Math.floor((x - r - this.left) / sizeMm), j = Math.floor((y - r - this.top) / sizeMm);
@@ -103,7 +103,7 @@ export class DistanceField {
       // Within one cell, whose edges are known.
       if (i === Math.floor((x + r - this.left) / sizeMm) && j === Math.floor((y + r - this.top) / sizeMm)) return edgesOf(i, j);
     }
-    return null;
+    return this.all;
   }
   /** From fine to coarse. */
   private readonly levels: readonly (readonly [number, (i: number, j: number) => Int32Array])[] = [
