@@ -3,7 +3,7 @@
  * decoders written in JavaScript; the usual PNGs by decode-png.ts; all others, and JPEGs in inks (CMYK), by Jimp.
  *
  * Input: the file and its header as `probePicture` told it, so that sizes are known to be bearable. Output: RGBA as stored, not yet turned
- * upright, transparent pixels laid on white paper. Throws ReadingError `damaged` where the file cannot be decoded or breaks off.
+ * upright, transparent pixels laid on white paper unless told otherwise. Throws ReadingError `damaged` where the file cannot be decoded or breaks off.
  * Memory: 4 bytes a pixel, and for JPEG and WebP up to twice as much again in the codec's heap, which never shrinks: whoever read a very large
  * picture in a thread does well to end that thread.
  */
@@ -18,6 +18,8 @@ export interface Pixels {
   height: number;
   /** 4 bytes a pixel: red, green, blue, and 255. */
   rgba: Uint8Array;
+  /** Something of what lies behind shows through. */
+  transparent?: boolean;
 }
 
 type Codec = (bytes: ArrayBuffer) => Promise<{ data: Uint8ClampedArray; width: number; height: number }>;
@@ -31,7 +33,8 @@ const codecs = {
 const compiled = new Map<string, Promise<WebAssembly.Module>>();
 const ready = new Set<string>();
 
-export async function decodePicture(file: Uint8Array, header: PictureHeader): Promise<Pixels> {
+/** `ground` is the brightness of what transparent pixels are laid on. */
+export async function decodePicture(file: Uint8Array, header: PictureHeader, ground = 255): Promise<Pixels> {
   let pixels: Pixels;
   try {
     if (header.type === 'jpeg') pixels = await decodeJpeg(file);
@@ -43,8 +46,7 @@ export async function decodePicture(file: Uint8Array, header: PictureHeader): Pr
   }
   const { width, height, rgba } = pixels;
   if (width !== header.storedWidthPx || height !== header.storedHeightPx || rgba.length < 4 * width * height) throw damaged();
-  layOnWhite(rgba);
-  return pixels;
+  return { ...pixels, transparent: layOn(rgba, ground) };
 }
 
 async function decodeJpeg(file: Uint8Array): Promise<Pixels> {
@@ -95,12 +97,15 @@ async function decodeByJimp(file: Uint8Array): Promise<Pixels> {
   return { width: bitmap.width, height: bitmap.height, rgba: new Uint8Array(bitmap.data.buffer, bitmap.data.byteOffset, bitmap.data.byteLength) };
 }
 
-/** Changes the pixels in place: each becomes what is seen with white paper behind it. */
-function layOnWhite(rgba: Uint8Array): void {
+/** Changes the pixels in place: each becomes what is seen with plain paper behind it. True where any was not opaque. */
+function layOn(rgba: Uint8Array, ground: number): boolean {
+  let transparent = false;
   for (let i = 3; i < rgba.length; i += 4) {
     const alpha = rgba[i];
     if (alpha === 255) continue;
-    for (let c = i - 3; c < i; c++) rgba[c] = 255 + Math.round(((rgba[c] - 255) * alpha) / 255);
+    for (let c = i - 3; c < i; c++) rgba[c] = ground + Math.round(((rgba[c] - ground) * alpha) / 255);
     rgba[i] = 255;
+    transparent = true;
   }
+  return transparent;
 }

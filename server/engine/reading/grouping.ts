@@ -4,7 +4,8 @@
  *
  * Input: a reading; never mutated. Output: a new one that shares what did not change. Distances are true ones on the sheet, mm, or picture
  * px while no scale is known. Order: parts are divided along the split lines; set-aside parts leave; the spanning tree over the rest is cut at the gap and
- * where a split line crosses a link; joins bring groups together again, and win. A correction that names nothing any more is passed over.
+ * where a split line crosses a link; joins bring groups together again, and win. With 'auto' the gap is chosen (auto-gap.ts), and where no one gap
+ * serves the whole sheet groups are chosen relative to their own sizes (relative-grouping.ts); a gap that is given cuts as it says. A correction that names nothing any more is passed over.
  * Cost: that of the spanning tree, about linear in the outlines' points.
  */
 import { outlineArea, outlineBox } from '../geometry/ring.ts';
@@ -16,6 +17,7 @@ import { DisjointSets, distanceToOutline, segmentsCross, spanningLinks, type Lin
 import { applyHomography, invertHomography, localScale, type Homography } from './homography.ts';
 import { findLeans } from './lean.ts';
 import { ringContains } from '../geometry/ring.ts';
+import { keptLinks as linksToKeep } from './relative-grouping.ts';
 import { givenScale } from './scale.ts';
 import { simplifyRing } from './simplify.ts';
 import { thinnestStroke } from './stroke.ts';
@@ -34,9 +36,11 @@ export function regroup(reading: Reading, groupingGap: number | 'auto', correcti
   const aside = new Set(corrections.setAside.map((p) => nearestPart(parts, p)));
   const kept = parts.map((_, i) => i).filter((i) => !aside.has(i) && !isOutside(reading, parts[i]));
   const keptOutlines = kept.map((i) => outlines[i]);
-  const keptLinks = kept.length === parts.length ? links : spanningLinks(keptOutlines);
-  const gap = groupingGap === 'auto' ? autoGap(keptLinks, keptOutlines) : groupingGap;
-  const groups = cutTree(parts, kept, keptLinks.map((l) => ({ ...l, a: kept[l.a], b: kept[l.b] })), gap, corrections, sheet);
+  const treeLinks = kept.length === parts.length ? links : spanningLinks(keptOutlines);
+  const gap = groupingGap === 'auto' ? autoGap(treeLinks, keptOutlines) : groupingGap;
+  const isKept = groupingGap === 'auto' ? linksToKeep(treeLinks, keptOutlines, gap) : treeLinks.map((l) => l.distance <= gap);
+  const holding = treeLinks.filter((_, i) => isKept[i]).map((l) => ({ ...l, a: kept[l.a], b: kept[l.b] }));
+  const groups = groupParts(parts, kept, holding, corrections, sheet);
   const scale = reading.mmPerPx;
   return {
     ...reading,
@@ -149,10 +153,10 @@ function isOutside(reading: Reading, part: ReadPart): boolean {
   return corners !== undefined && part.outlinePx.rings[0].some((p) => !ringContains(corners, p));
 }
 
-function cutTree(parts: readonly ReadPart[], kept: readonly number[], links: readonly Link[], gap: number, corrections: Corrections, sheet: Sheet): number[][] {
+/** `links` are those that the gap, or the relative rule, leaves whole. */
+function groupParts(parts: readonly ReadPart[], kept: readonly number[], links: readonly Link[], corrections: Corrections, sheet: Sheet): number[][] {
   const sets = new DisjointSets(parts.length);
   for (const link of links) {
-    if (link.distance > gap) continue;
     const from = sheet.toPx(link.from), to = sheet.toPx(link.to);
     if (!corrections.splits.some((line) => segmentsCross(from, to, line.from, line.to))) sets.join(link.a, link.b);
   }

@@ -51,16 +51,39 @@ export async function readStampSheet(file: Uint8Array, options: ReadOptions, con
     ...(foundCorners ? { foundCornersPx: foundCorners } : {}),
   };
   const scaled = scale ? withScale(bare, scale.pxToMm, scale.source, scale.source === 'sheet' ? options.sheet?.cornersPx : undefined) : bare;
-  const warnings = scale ? [] : [{ code: 'no-scale', message: 'The picture does not say its scale, so sizes are not known yet. Type the scan’s dpi, or drag a ruler over a length that you know.' }];
+  const warnings = warningsOf(scale, mmPerPx, foundCorners !== null);
   const reading = regroup({ ...scaled, warnings }, scale ? (options.groupingGapMm ?? 'auto') : 'auto', options.corrections ?? NO_CORRECTIONS);
   if (reading.sentiments.length === 0 && (options.corrections?.setAside.length ?? 0) === 0) throw noInk();
   progress(1, 'done');
   return reading;
 }
 
-/** The pixels are let go of as soon as the map is made. */
+/** Above this a letter's stroke is hardly a pixel wide: 125 dpi. */
+const COARSE_MM_PER_PX = 25.4 / 125;
+
+function warningsOf(scale: Scale | null, mmPerPx: number | null, cornersFound: boolean): Reading['warnings'] {
+  const warnings: Reading['warnings'] = [];
+  if (!scale && cornersFound) warnings.push({ code: 'no-scale', message: 'The sheet’s corners were found, but not its size. Type the sheet’s width and height, and every sentiment has its size.' });
+  else if (!scale) warnings.push({ code: 'no-scale', message: 'The picture does not say its scale, so sizes are not known yet. Type the scan’s dpi, or drag a ruler over a length that you know.' });
+  if (mmPerPx !== null && mmPerPx > COARSE_MM_PER_PX) {
+    warnings.push({ code: 'coarse-picture', message: `The picture has only ${Math.round(25.4 / mmPerPx)} dots per inch, so sizes are good to about ${mmPerPx.toFixed(1)} mm. Scan at 300 dpi, or take the photograph from nearer.` });
+  }
+  return warnings;
+}
+
+/** White ink on a transparent ground is bare on white paper: then it is laid on black. */
 async function separateInk(file: Uint8Array, header: PictureHeader, given: Scale | null, options: ReadOptions, progress: Progress): Promise<Separated> {
-  const pixels = await decodePicture(file, header);
+  const onWhite = await inkOn(file, header, WHITE, given, options, progress);
+  if (onWhite !== 'transparent') return onWhite;
+  const onBlack = await inkOn(file, header, BLACK, given, options, progress);
+  if (onBlack === 'transparent') throw noInk();
+  return onBlack;
+}
+const WHITE = 255, BLACK = 0;
+
+/** The pixels are let go of as soon as the map is made. Answers `transparent` where there is no ink but another ground could bring some out. */
+async function inkOn(file: Uint8Array, header: PictureHeader, ground: number, given: Scale | null, options: ReadOptions, progress: Progress): Promise<Separated | 'transparent'> {
+  const pixels = await decodePicture(file, header, ground);
   const turning: Turning = { width: pixels.width, height: pixels.height, orientation: header.orientation, mirrored: options.mirrored ?? false };
   progress(0.3, 'looking for the sheet');
   let surface = await findSurface(pixels, turning, given, fileScale(header.dpi), options);
@@ -72,6 +95,7 @@ async function separateInk(file: Uint8Array, header: PictureHeader, given: Scale
   }
   progress(0.4, 'levelling light');
   const map = mapInk(pixels, estimatePaper(pixels, region), region);
+  if (!map && pixels.transparent) return 'transparent';
   if (!map) throw noInk();
   return { map, surface, turning, foundCorners: sheet?.corners ? fromTopLeft(sheet.corners.map((p) => uprightPlace(turning, p))) : null };
 }

@@ -19,6 +19,7 @@ export interface TrueSentiment {
   /** On the sheet, mm; even-odd. */
   rings: Ring[];
   box: Box;
+  innerGapMm: number;
 }
 export interface MadeSheet {
   widthMm: number;
@@ -27,18 +28,26 @@ export interface MadeSheet {
   largestInnerGapMm: number;
 }
 export type Spacing = 'easy' | 'hard';
+/** What the ratio is of: the largest inner gap of the whole sheet, or of the two neighbours, so that no one gap serves the sheet. */
+export type Measure = 'sheet' | 'neighbours';
 
 const SPACING_RATIO: Record<Spacing, [number, number]> = { easy: [1.6, 2.1], hard: [1.15, 1.5] };
 
+/** Least distance between two sentiments, from their largest inner gaps. */
+type Clear = (innerGapMm: number, otherInnerGapMm: number) => number;
+/** Stamps must be cut apart: words in one piece keep this distance. */
+const LEAST_CLEAR_MM = 1.5;
+
 interface Draft { words: string; rings: Ring[]; box: Box; innerGapMm: number }
 
-export function makeSheet(random: Random, half: Half, spacing: Spacing, sizeMm: { w: number; h: number }, ratio?: number): MadeSheet {
+export function makeSheet(random: Random, half: Half, spacing: Spacing, sizeMm: { w: number; h: number }, measure: Measure = 'sheet'): MadeSheet {
   // Many makers set a whole sheet in one or two types, others every sentiment in another.
   const fonts = random.next() < 0.35 ? [random.pick(vocabulary[half].fonts), random.pick(vocabulary[half].fonts)] : vocabulary[half].fonts;
   const drafts = Array.from({ length: 26 }, () => draft(random, half, fonts));
   const largestInnerGapMm = Math.max(...drafts.slice(0, 14).map((d) => d.innerGapMm));
   const usable = drafts.filter((d) => d.innerGapMm <= largestInnerGapMm);
-  const clear = largestInnerGapMm * (ratio ?? random.between(...SPACING_RATIO[spacing]));
+  const ratio = random.between(...SPACING_RATIO[spacing]);
+  const clear: Clear = measure === 'sheet' ? () => ratio * largestInnerGapMm : (a, b) => ratio * Math.max(a, b, LEAST_CLEAR_MM);
   const sentiments = half === 'tuning' ? shelve(random, usable, clear, sizeMm) : scatter(random, usable, clear, sizeMm);
   return { widthMm: sizeMm.w, heightMm: sizeMm.h, sentiments, largestInnerGapMm };
 }
@@ -114,24 +123,27 @@ const EDGE_MM = 6;
 
 function placed(d: Draft, x: number, y: number): TrueSentiment {
   const dx = x - d.box.x, dy = y - d.box.y;
-  return { words: d.words, rings: d.rings.map((ring) => ring.map((p) => ({ x: p.x + dx, y: p.y + dy }))), box: { ...d.box, x, y } };
+  return { words: d.words, rings: d.rings.map((ring) => ring.map((p) => ({ x: p.x + dx, y: p.y + dy }))), box: { ...d.box, x, y }, innerGapMm: d.innerGapMm };
 }
 
-function isClear(candidate: TrueSentiment, others: readonly TrueSentiment[], clear: number): boolean {
-  return others.every((o) => boxDistance(o.box, candidate.box) >= clear || (boxDistance(o.box, candidate.box) > clear * 0.2 && outlineGap({ rings: o.rings }, { rings: candidate.rings }).distance >= clear));
+function isClear(candidate: TrueSentiment, others: readonly TrueSentiment[], clear: Clear): boolean {
+  return others.every((o) => {
+    const least = clear(candidate.innerGapMm, o.innerGapMm), boxes = boxDistance(o.box, candidate.box);
+    return boxes >= least || (boxes > least * 0.2 && outlineGap({ rings: o.rings }, { rings: candidate.rings }).distance >= least);
+  });
 }
 
-function shelve(random: Random, drafts: readonly Draft[], clear: number, size: { w: number; h: number }): TrueSentiment[] {
+function shelve(random: Random, drafts: readonly Draft[], clear: Clear, size: { w: number; h: number }): TrueSentiment[] {
   const done: TrueSentiment[] = [];
   let x = EDGE_MM, y = EDGE_MM, shelf = 0;
   for (const d of drafts) {
-    if (x + d.box.w > size.w - EDGE_MM) { x = EDGE_MM; y += shelf + clear * looseness(random); shelf = 0; }
+    if (x + d.box.w > size.w - EDGE_MM) { x = EDGE_MM; y += shelf + clear(d.innerGapMm, d.innerGapMm) * looseness(random); shelf = 0; }
     if (y + d.box.h > size.h - EDGE_MM || x + d.box.w > size.w - EDGE_MM) continue;
     let sentiment = placed(d, x, y);
     for (let nudge = 0; nudge < 40 && !isClear(sentiment, done, clear); nudge++) sentiment = placed(d, x + nudge * 0.5, y);
     if (!isClear(sentiment, done, clear) || sentiment.box.x + d.box.w > size.w - EDGE_MM) continue;
     done.push(sentiment);
-    x = sentiment.box.x + d.box.w + clear * looseness(random);
+    x = sentiment.box.x + d.box.w + clear(d.innerGapMm, d.innerGapMm) * looseness(random);
     shelf = Math.max(shelf, d.box.h);
   }
   return done;
@@ -142,7 +154,7 @@ function looseness(random: Random): number {
   return random.next() < 0.5 ? 1 : random.between(1, 2);
 }
 
-function scatter(random: Random, drafts: readonly Draft[], clear: number, size: { w: number; h: number }): TrueSentiment[] {
+function scatter(random: Random, drafts: readonly Draft[], clear: Clear, size: { w: number; h: number }): TrueSentiment[] {
   const done: TrueSentiment[] = [];
   for (const d of drafts) {
     let best: TrueSentiment | null = null, bestAir = Infinity;
