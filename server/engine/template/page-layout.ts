@@ -46,6 +46,22 @@ export function pageLayout(context: PageContext, head: PageHead): { body: Box; i
   return { body: { x: below.left.x, y: top, w: below.left.w, h: below.left.y + below.left.h - top }, items: [...above.items, ...below.items] };
 }
 
+/** For a tall drawing on wide paper: all words and the bars in a column at the right. */
+function columnLayout(context: PageContext, head: PageHead): { body: Box; items: PageItem[] } | null {
+  const printable = printableBox(context.printer);
+  const room = { x: printable.x + INSET_MM, y: printable.y + INSET_MM, w: printable.w - 2 * INSET_MM, h: printable.h - 2 * INSET_MM };
+  if (room.w < 2 * COLUMN_MM) return null;
+  const column = { ...room, x: room.x + room.w - COLUMN_MM, w: COLUMN_MM };
+  const below = scaleCheck(column, madeFor(context));
+  const above = headItems(context, head, column);
+  // The bars stand upright below the words; without room for both the drawing is tiled.
+  if (above.bottom > room.y + room.h - UPRIGHT_MM) return null;
+  return { body: { ...room, w: room.w - COLUMN_MM - 4 }, items: [...above.items, ...below.items] };
+}
+const COLUMN_MM = 68;
+/** Upright bars with their captions and the words below them, mm. */
+const UPRIGHT_MM = 140;
+
 export function madeFor({ printer, printerName, unit }: PageContext): string {
   const name = printerName ?? printer.name;
   const paper = formatSize(printer.paper.widthMm, printer.paper.heightMm, unit, { inches: 'decimal' });
@@ -105,9 +121,9 @@ export function finishedPage(context: PageContext, name: string, items: PageItem
  * fits on the paper is drawn in one piece, else the last in tiles.
  */
 export function drawingPages(context: PageContext, head: PageHead, drawing: readonly PageItem[], regions: readonly Box[]): PageDescription[] {
-  const whole = pageLayout(context, head);
-  const region = regions.find((r) => r.w <= whole.body.w && r.h <= whole.body.h);
-  if (region !== undefined) {
+  for (const whole of [pageLayout(context, head), columnLayout(context, head)]) {
+    const region = whole && regions.find((r) => r.w <= whole.body.w && r.h <= whole.body.h);
+    if (!whole || !region) continue;
     const centre = boxCentre(whole.body);
     const dx = centre.x - (region.x + region.w / 2), dy = Math.max(whole.body.y - region.y, Math.min(centre.y - (region.y + region.h / 2), whole.body.y + 4 - region.y));
     return [finishedPage(context, head.name, [...whole.items, ...clipItems(moved(drawing, dx, dy), whole.body)])];

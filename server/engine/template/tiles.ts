@@ -13,6 +13,7 @@ import type { PageItem } from './types.ts';
 /** Enough for a cross and a strip of tape, mm. */
 export const OVERLAP_MM = 12;
 const CROSS_ARM_MM = 3.5;
+const LEAD_MM = 4;
 
 export interface Tile { row: number; column: number; window: Box }
 
@@ -25,9 +26,10 @@ export function tilesOf(region: Box, room: { w: number; h: number }): { tiles: T
 function starts(from: number, length: number, room: number): number[] {
   if (room <= OVERLAP_MM) throw new RangeError(`Tiles of ${room} mm cannot overlap by ${OVERLAP_MM} mm.`);
   const count = Math.max(1, Math.ceil((length - OVERLAP_MM) / (room - OVERLAP_MM)));
-  // What the last tile has over is shared by both ends, so that no drawing sits at the very edge.
+  // What the tiles have over goes to the end, but for a little that keeps the drawing off the first edge.
   const spare = count * room - (count - 1) * OVERLAP_MM - length;
-  return Array.from({ length: count }, (_, i) => from - spare / 2 + i * (room - OVERLAP_MM));
+  const before = Math.min(spare / 2, LEAD_MM);
+  return Array.from({ length: count }, (_, i) => from - before + i * (room - OVERLAP_MM));
 }
 
 function joinMarks(columns: readonly number[], rows: readonly number[], room: { w: number; h: number }): PageItem[] {
