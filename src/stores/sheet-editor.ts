@@ -4,7 +4,7 @@
  */
 import { defineStore } from 'pinia';
 import { computed, ref, shallowRef } from 'vue';
-import { checkLayout } from '../../server/engine/gangrun/layout.ts';
+import { createLayoutCheck } from '../../server/engine/gangrun/layout.ts';
 import type { LayoutFault, Placement, RunOrder, Setup } from '../../server/engine/gangrun/types.ts';
 import { createUndoHistory } from './undo-history.ts';
 import { movedBy, samePlaces, turnedBy } from './sheet-layout.ts';
@@ -23,7 +23,8 @@ export const useSheetEditor = defineStore('sheet-editor', () => {
 
   const setup = computed(() => history.now.value.setups[position.value]);
   /** Only the setup in hand: the others do not change under it. */
-  const faults = computed<LayoutFault[]>(() => (order.value && setup.value ? checkLayout(order.value, [setup.value]) : []));
+  const check = computed(() => order.value && createLayoutCheck(order.value));
+  const faults = computed<LayoutFault[]>(() => (check.value && setup.value ? check.value([setup.value]) : []));
 
   function change(next: Pick<Setup, 'turns' | 'placements'>, gesture: string | null = null): void {
     history.change({ setups: history.now.value.setups.map((one, i) => (i === position.value ? next : one)) }, gesture);

@@ -25,11 +25,24 @@ export const FAULT_MM = 0.01;
 /** A placement with its shapes where they stand. */
 interface Standing { placement: Placement; lines: RunLine[]; labels: Ring[]; bodies: { hull: Ring; trimMm: number }[]; ink: Ring }
 
-export function checkLayout(order: RunOrder, setups: Pick<Setup, 'turns' | 'placements'>[]): LayoutFault[] {
+type CheckedSetup = Pick<Setup, 'turns' | 'placements'>;
+
+export function checkLayout(order: RunOrder, setups: CheckedSetup[]): LayoutFault[] {
+  return createLayoutCheck(order)(setups);
+}
+
+/** The same for one order asked again and again, as a drag does: hulls are worked out once, and so is a placement that has not moved. */
+export function createLayoutCheck(order: RunOrder): (setups: CheckedSetup[]) => LayoutFault[] {
   const shapes = orderShapes(order);
   const frame = sheetFrame(order);
-  return setups.flatMap((setup, index) => {
-    const standing = setup.placements.map((placement) => stand(shapes, placement));
+  const known = new WeakMap<Placement, Standing>();
+  const stood = (placement: Placement): Standing => {
+    const standing = known.get(placement) ?? stand(shapes, placement);
+    known.set(placement, standing);
+    return standing;
+  };
+  return (setups) => setups.flatMap((setup, index) => {
+    const standing = setup.placements.map(stood);
     return [...alone(order, frame, standing), ...pairs(order, shapes, standing), ...impressions(order, frame, standing, setup.turns), ...feed(order, frame, standing, setup.turns)]
       .map((fault) => ({ ...fault, setup: index }));
   });

@@ -74,15 +74,21 @@ export function createArtist(order: RunOrder, titleOf: (lineId: string) => strin
     return made;
   }
 
+  /** A placement that has not moved keeps its shape, so that only the dragged one is drawn anew. */
+  const drawn = new WeakMap<Placement, PlacedShape>();
   return (placement, number) => {
+    const before = drawn.get(placement);
+    if (before?.number === number) return before;
     const first = shapes.line(placement.lineIds[0]);
     const angle = labelAngle(first, placement.rotationDeg);
     const box = ringBox(convexHull(shapeOfPlacement(shapes, placement).labels.flat()));
-    return {
+    const shape: PlacedShape = {
       id: placement.id, number, x: placement.x, y: placement.y, transform: `translate(${placement.x} ${placement.y}) rotate(${angle})`, parts: parts(placement.lineIds),
       middle: { x: placement.x + box.x + box.w / 2, y: placement.y + box.y + box.h / 2 },
       badge: { x: placement.x + box.x + BADGE_IN_MM, y: placement.y + box.y + BADGE_IN_MM }, title: [...new Set(placement.lineIds.map(titleOf))].join(', '),
     };
+    drawn.set(placement, shape);
+    return shape;
   };
 }
 
