@@ -1,5 +1,6 @@
 /** What stands on the table: stamping platforms, printers, cardstocks and inks. Each list has its search, order and bin. */
 import { z } from 'zod';
+import { Unit } from './account.ts';
 import { routes } from './route.ts';
 import { Box, Id, Instant, LengthMm, LengthOrZeroMm, listQuery, Name, Note, page, StudioItemParams, StudioParams, Version } from './shared.ts';
 
@@ -135,6 +136,11 @@ export const gearRoutes = routes({
   'PATCH /studios/:studioId/printers/:id': { ...alter, summary: 'Change a printer', body: change(printer), response: Printer },
   'DELETE /studios/:studioId/printers/:id': { ...alter, summary: 'Put a printer in the bin' },
   'POST /studios/:studioId/printers/:id/restore': { ...alter, summary: 'Take a printer out of the bin', response: Printer },
+
+  'GET /studios/:studioId/printers/:id/pages/:page': {
+    summary: 'A page that is printed once: the test page that shows how true the printer is, or the photo page with its corner markers', access: 'helper', costly: true,
+    params: StudioItemParams.extend({ page: z.enum(['test', 'photo']) }), query: z.object({ unit: Unit.default('mm') }), produces: 'application/pdf',
+  },
 
   'GET /studios/:studioId/cardstocks': { ...list, summary: 'List cardstocks', query: listQuery(['name', 'size', 'onHand', 'created', 'updated']), response: page(Cardstock) },
   'POST /studios/:studioId/cardstocks': { ...add, summary: 'Add a cardstock', body: NewCardstock, response: Cardstock },

@@ -5,6 +5,7 @@ import type { DieGeometry, FitOptions } from '../engine/fit/types.ts';
 import type { RunOrder } from '../engine/gangrun/types.ts';
 import type { Outline } from '../engine/geometry/types.ts';
 import type { Reading, ReadOptions } from '../engine/reading/types.ts';
+import type { PrinterPageRequest } from '../features/gear/printer-pages.ts';
 import type { Wishes } from '../features/stamp-sets/sentiment-follow.ts';
 
 type Task = (input: never, control: Control) => Promise<unknown>;
@@ -19,6 +20,7 @@ const all = {
   fitTable: async (input: { artworks: Outline[]; dies: DieGeometry[]; options?: FitOptions }) => (await import('../engine/fit/index.ts')).fitTable(input.artworks, input.dies, input.options),
   planGangRun: async (input: { order: RunOrder }, control) => (await import('../engine/gangrun/index.ts')).planGangRun(input.order, control),
   planCuts: async (input: { parts: CutPart[]; stock: { widthMm: number; heightMm: number }; options?: { trimMm?: number } }) => (await import('../engine/cutplan/index.ts')).planCuts(input.parts, input.stock, input.options),
+  printerPage: async (input: PrinterPageRequest) => (await import('../features/gear/printer-pages.ts')).drawPrinterPage(input),
 } satisfies Record<string, Task>;
 
 export const tasks: Record<string, ((input: unknown, control: Control) => Promise<unknown>) | undefined> = all as never;

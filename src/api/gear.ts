@@ -1,5 +1,6 @@
+import type { Unit } from '../../server/contract/account.ts';
 import type { Cardstock, Corner, Grain, Ink, InkKind, Platform, Printer, Side } from '../../server/contract/gear.ts';
-import { call } from './http.ts';
+import { addressOf, call } from './http.ts';
 import type { Body, Query } from './http.ts';
 
 export type { Cardstock, Corner, Grain, Ink, InkKind, Platform, Printer, Side };
@@ -62,3 +63,6 @@ export const inkCalls: GearCalls<Ink, 'inks'> = {
 export async function allGear<I, N extends GearNoun>(calls: GearCalls<I, N>, studioId: string): Promise<I[]> {
   return (await calls.list(studioId, { sort: 'name', limit: 200 } as Query<`GET /studios/:studioId/${N}`>)).items;
 }
+
+/** Of a PDF to print once. */
+export const printerPageAddress = (studioId: string, id: string, page: 'test' | 'photo', unit: Unit) => addressOf('/studios/:studioId/printers/:id/pages/:page', { studioId, id, page }, { unit });

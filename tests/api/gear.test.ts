@@ -112,6 +112,23 @@ describe('a printer', () => {
   });
 });
 
+describe('the pages of a printer', () => {
+  it.each(['test', 'photo'])('%s page is a PDF of the printer\'s paper, for helpers too, and nobody else', async (page) => {
+    const { body: made } = await maker.post(at('printers'), { name: 'For pages', paper: { widthMm: 210, heightMm: 297 }, unprintable: { left: 4, right: 4, top: 4, bottom: 4 } }).expect(201);
+    const answer = await helper.get(`${at('printers', made.id)}/pages/${page}?unit=in`).buffer(true).parse((response, done) => {
+      const parts: Buffer[] = [];
+      response.on('data', (part: Buffer) => parts.push(part)).on('end', () => done(null, Buffer.concat(parts)));
+    }).expect(200).expect('content-type', 'application/pdf');
+    const pdf = (answer.body as Buffer).toString('latin1');
+    expect(pdf.startsWith('%PDF-')).toBe(true);
+    const [, width, height] = /MediaBox \[0 0 ([\d.]+) ([\d.]+)\]/.exec(pdf)!.map(Number);
+    // ISO 32000-1 §8.3.2.3: 72 points an inch.
+    expect([(width / 72) * 25.4, (height / 72) * 25.4]).toEqual([expect.closeTo(210, 1), expect.closeTo(297, 1)]);
+    await stranger.get(`${at('printers', made.id)}/pages/${page}`).expect(404);
+    await helper.get(`${at('printers', made.id)}/pages/other`).expect(404);
+  });
+});
+
 describe('two people at the same piece of gear', () => {
   it('never both win: of ten changes sent at once with one version, one is kept', async () => {
     const { body: made } = await maker.post(at('cardstocks'), { name: 'Wanted by all', widthMm: 100, heightMm: 100 }).expect(201);

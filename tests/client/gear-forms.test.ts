@@ -6,7 +6,8 @@ import { inkForm } from '../../src/components/gear/ink-form.ts';
 import { drawPlatform, usualOpenSides } from '../../src/components/gear/platform-drawing.ts';
 import { platformForm } from '../../src/components/gear/platform-form.ts';
 import { drawPrinter } from '../../src/components/gear/printer-drawing.ts';
-import { printerForm } from '../../src/components/gear/printer-form.ts';
+import { correction, printerForm, TEST_CROSS_MM } from '../../src/components/gear/printer-form.ts';
+import { TEST_CROSS_MM as DRAWN_CROSS_MM } from '../../server/engine/template/own-pages.ts';
 import { formatLength, formatSize } from '../../server/engine/geometry/units.ts';
 
 const row = { id: '0193a000-0000-7000-8000-000000000001', version: 3, createdAt: '', updatedAt: '', deletedAt: null };
@@ -51,6 +52,18 @@ describe('a printer\'s form', () => {
     expect(printerForm.blank('mm')).toMatchObject({ widthMm: 210, heightMm: 297 });
     const letter = printerForm.blank('in');
     expect([letter.widthMm! / 25.4, letter.heightMm! / 25.4]).toEqual([expect.closeTo(8.5, 9), expect.closeTo(11, 9)]);
+  });
+});
+
+describe('a printer\'s correction', () => {
+  it('comes of what a ruler says on the test page: scale = bar / 100 mm, shift = measured − scale · nominal', () => {
+    // Bars at 99.5 and 100.2 mm; cross drawn at (30, 40), found at (30.35, 39.9): 30.35 − 0.995 · 30 = 0.5, 39.9 − 1.002 · 40 = −0.18.
+    const { scale, shift } = correction({ barX: 99.5, barY: 100.2, crossX: 30.35, crossY: 39.9 });
+    expect([scale.x, scale.y, shift.x, shift.y]).toEqual([0.995, 1.002, expect.closeTo(0.5, 9), expect.closeTo(-0.18, 9)]);
+  });
+
+  it('measures from the cross where the test page draws it', () => {
+    expect(TEST_CROSS_MM).toEqual(DRAWN_CROSS_MM);
   });
 });
 

@@ -5,6 +5,8 @@ import type { Deps, Feature } from '../../feature.ts';
 import { cardstocks, inks, platforms, printers } from './gear-kinds.ts';
 import type { FieldsOf, GearItem, GearKind } from './gear-kinds.ts';
 import type { GearQuery } from './gear.queries.ts';
+import { FileAnswer } from '../../middleware/mount.ts';
+import type { PrinterPageRequest } from './printer-pages.ts';
 import { createGearService } from './gear.service.ts';
 
 interface InList { params: { studioId: string } }
@@ -14,6 +16,7 @@ interface OfItem { params: { studioId: string; id: string } }
 function handlersOf<I extends GearItem>(deps: Deps, kind: GearKind<I>) {
   const gear = createGearService(deps, kind);
   return {
+    gear,
     list: ({ params, query }: InList & { query: GearQuery }) => gear.list(params.studioId, query),
     add: ({ params, body }: InList & { body: FieldsOf<I> }) => gear.add(params.studioId, body),
     find: ({ params }: OfItem) => gear.find(params.studioId, params.id),
@@ -41,6 +44,10 @@ export function createGear(deps: Deps): Feature {
       'PATCH /studios/:studioId/printers/:id': printer.change,
       'DELETE /studios/:studioId/printers/:id': printer.remove,
       'POST /studios/:studioId/printers/:id/restore': printer.restore,
+      'GET /studios/:studioId/printers/:id/pages/:page': async ({ params, query }) => {
+        const printerRow = await printer.gear.find(params.studioId, params.id);
+        return new FileAnswer(await deps.engine.run<Uint8Array>('printerPage', { page: params.page, printer: printerRow, unit: query.unit } satisfies PrinterPageRequest), 'application/pdf');
+      },
 
       'GET /studios/:studioId/cardstocks': cardstock.list,
       'POST /studios/:studioId/cardstocks': cardstock.add,
