@@ -56,14 +56,22 @@ function receive(req: Request, res: Response, parse: ReturnType<multer.Multer['a
         reject(refuse(req, res, tooLarge(maxBytes, maxFiles)));
       }
     };
+    const gone = () => {
+      settle();
+      reject(broken());
+    };
     const settle = () => {
       clearTimeout(timer);
       req.off('data', heard);
+      res.off('close', gone);
     };
+    // Broken off while we asked who it is: the parser, beginning later, would never hear of it.
+    if (req.destroyed || res.closed) return gone();
+    res.once('close', gone);
     parse(req, res, (error: unknown) => {
       settle();
       if (!error) return resolve();
-      reject(error instanceof multer.MulterError ? refuse(req, res, translate(error, maxBytes, maxFiles)) : refuse(req, res, new AppError(400, 'broken-upload', 'The file did not arrive whole. Send it again.', { cause: error })));
+      reject(error instanceof multer.MulterError ? refuse(req, res, translate(error, maxBytes, maxFiles)) : refuse(req, res, broken(error)));
     });
     req.on('data', heard);
   });
@@ -79,6 +87,8 @@ function refuse(req: Request, res: Response, error: AppError, drainMs = DRAIN_MS
   });
   return error;
 }
+
+const broken = (cause?: unknown) => new AppError(400, 'broken-upload', 'The file did not arrive whole. Send it again.', { cause });
 
 function translate(error: multer.MulterError, maxBytes: number, maxFiles: number): AppError {
   if (error.code === 'LIMIT_FILE_SIZE') return tooLarge(maxBytes, maxFiles);
