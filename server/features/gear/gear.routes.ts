@@ -4,10 +4,10 @@ import { feature } from '../../feature.ts';
 import type { Deps, Feature } from '../../feature.ts';
 import { cardstocks, inks, platforms, printers } from './gear-kinds.ts';
 import type { FieldsOf, GearItem, GearKind } from './gear-kinds.ts';
-import type { GearQuery } from './gear.queries.ts';
 import { FileAnswer } from '../../middleware/mount.ts';
 import type { PrinterPageRequest } from './printer-pages.ts';
 import { createGearService } from './gear.service.ts';
+import type { GearQuery } from './gear.service.ts';
 
 interface InList { params: { studioId: string } }
 interface OfItem { params: { studioId: string; id: string } }

@@ -7,6 +7,8 @@ import { binGear, findGear, insertGear, listGear, updateGear } from './gear.quer
 import type { GearQuery } from './gear.queries.ts';
 import type { FieldsOf, GearItem, GearKind } from './gear-kinds.ts';
 
+export type { GearQuery };
+
 /** Who does it and from where, for the audit log. */
 export interface Actor { personId: string; address: string }
 
