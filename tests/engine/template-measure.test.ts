@@ -50,7 +50,13 @@ function pathOf(page: PageDescription, role: PageRole): PagePath {
   return item;
 }
 
-/** Where the bed's origin is on a page without correction, told by its trim line. */
+/** What this printer makes of a drawn page: printed = scale · drawn + shift. */
+function printedPage(page: PageDescription, { scale, shift }: PrinterProfile): PageDescription {
+  const printed = (p: Point): Point => ({ x: p.x * scale.x + shift.x, y: p.y * scale.y + shift.y });
+  return { ...page, items: page.items.map((i) => (i.kind === 'text' ? { ...i, at: printed(i.at) } : { ...i, rings: i.rings.map((ring) => ring.map(printed)) })) };
+}
+
+/** Where the bed's origin is on a printed page, told by its trim line. */
 function originOf(page: PageDescription, trimmed: Point): Point {
   const box = boxOf(pathOf(page, 'trim-line').rings);
   return { x: box.x - trimmed.x, y: box.y - trimmed.y };
@@ -79,8 +85,9 @@ describe('pages drawn by poppler at 600 dpi', () => {
     it(`shows cut lines, ink, edges and bars within 0.1 mm of the plan: ${title}`, async () => {
       const { order, plan } = run;
       const frame = { x: corner.endsWith('left') ? 0 : order.platform.widthMm - order.sheet.widthMm, y: corner.startsWith('top') ? 0 : order.platform.heightMm - order.sheet.heightMm };
-      const [placing, lid] = documentOf(run, ['placing', 'lid'], paper).pages;
-      const rasters = rasterise(await renderPdf(documentOf(run, ['placing', 'lid'], printer)));
+      const drawn = documentOf(run, ['placing', 'lid'], printer);
+      const [placing, lid] = drawn.pages.map((page) => printedPage(page, printer));
+      const rasters = rasterise(await renderPdf(drawn));
       const mirror = (p: Point): Point => (hinge === 'left' || hinge === 'right' ? { x: order.platform.widthMm - p.x, y: p.y } : { x: p.x, y: order.platform.heightMm - p.y });
       const views = [
         { raster: rasters[0], page: placing, origin: originOf(placing, frame), map: (p: Point) => p },

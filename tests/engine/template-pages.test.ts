@@ -9,7 +9,9 @@ import { A4, LETTER, SAMPLE_LABELS, sampleRun, SMALL, TWELVE } from './template-
 import { rasterise, wordsOf } from './template-raster.ts';
 
 const ALL: TemplatePage[] = ['placing', 'lid', 'dies-face-up', 'dies-face-down', 'sheet-cut', 'ticket'];
-const OFF: PrinterProfile = { ...LETTER, scale: { x: 1.02, y: 0.98 }, shift: { x: 1.5, y: -0.7 } };
+/** Its margins hold all that its scale and shift leave of the page. */
+const WIDE: PrinterProfile = { ...LETTER, unprintable: { left: 5, right: 5, top: 5, bottom: 12 } };
+const OFF: PrinterProfile = { ...WIDE, scale: { x: 1.02, y: 0.98 }, shift: { x: 1.5, y: -0.7 } };
 
 function template(options: { printer?: PrinterProfile; labels?: unknown; pages?: TemplatePage[]; unit?: 'mm' | 'in' } = {}, run = sampleRun(5, { turns: 2, rows: 2 })) {
   return templateDocument(run.order, run.plan, { pages: options.pages ?? ALL, printer: options.printer ?? LETTER, unit: options.unit ?? 'mm', title: 'Spring', labels: 'labels' in options ? options.labels : SAMPLE_LABELS });
@@ -50,7 +52,7 @@ describe('the PDF', () => {
   });
 
   it('is the same whatever the drawing’s printer: only places change', async () => {
-    const plain = template(), corrected = template({ printer: OFF });
+    const plain = template({ printer: WIDE }), corrected = template({ printer: OFF });
     plain.pages.forEach((page, i) => page.items.forEach((item, k) => {
       const other = corrected.pages[i].items[k];
       const a = item.kind === 'text' ? [item.at] : item.rings.flat(), b = other.kind === 'text' ? [other.at] : other.rings.flat();
@@ -155,7 +157,7 @@ describe('pages of their own', () => {
   it('printer test page: bars both ways, frame, cross and an ID-1 card (ISO/IEC 7810), drawn without correction', () => {
     const [page] = printerTestDocument(OFF, 'mm').pages;
     expect(pathsOf(page, 'scale-bar').map((bar) => boxOf([bar])).map(({ w, h }) => Math.max(w, h))).toEqual([100, 101.6, 100, 101.6].map((mm) => expect.closeTo(mm, 9)));
-    expect(boxOf(pathsOf(page, 'margin-frame'))).toEqual({ x: 4.2, y: 4.2, w: expect.closeTo(207.5, 9), h: expect.closeTo(271, 9) });
+    expect(boxOf(pathsOf(page, 'margin-frame'))).toEqual({ x: 5, y: 5, w: expect.closeTo(205.9, 9), h: expect.closeTo(262.4, 9) });
     const cross = boxOf(pathsOf(page, 'test-cross'));
     expect([cross.x + cross.w / 2, cross.y + cross.h / 2]).toEqual([30, 40]);
     const card = boxOf(pathsOf(page, 'card'));

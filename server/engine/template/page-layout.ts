@@ -10,7 +10,7 @@ import { boxCentre } from '../geometry/ring.ts';
 import type { Box } from '../geometry/types.ts';
 import { clipItems } from './clip.ts';
 import { INK, line, moved, rect, style, words } from './page-items.ts';
-import { correctedPage, printableBox } from './printer.ts';
+import { correctedPage, drawableBox } from './printer.ts';
 import { scaleCheck } from './scale-check.ts';
 import { shortened, textWidth, wrapText } from './text-width.ts';
 import { tilesOf } from './tiles.ts';
@@ -38,7 +38,7 @@ const INSET_MM = 1;
 
 /** Where nothing is drawn yet, and all that stands round it. */
 export function pageLayout(context: PageContext, head: PageHead): { body: Box; items: PageItem[] } {
-  const printable = printableBox(context.printer);
+  const printable = drawableBox(context.printer);
   const room = { x: printable.x + INSET_MM, y: printable.y + INSET_MM, w: printable.w - 2 * INSET_MM, h: printable.h - 2 * INSET_MM };
   const below = scaleCheck(room, madeFor(context));
   const above = headItems(context, head, below.left);
@@ -48,7 +48,7 @@ export function pageLayout(context: PageContext, head: PageHead): { body: Box; i
 
 /** For a tall drawing on wide paper: all words and the bars in a column at the right. */
 function columnLayout(context: PageContext, head: PageHead): { body: Box; items: PageItem[] } | null {
-  const printable = printableBox(context.printer);
+  const printable = drawableBox(context.printer);
   const room = { x: printable.x + INSET_MM, y: printable.y + INSET_MM, w: printable.w - 2 * INSET_MM, h: printable.h - 2 * INSET_MM };
   if (room.w < 2 * COLUMN_MM) return null;
   const column = { ...room, x: room.x + room.w - COLUMN_MM, w: COLUMN_MM };
@@ -60,7 +60,7 @@ function columnLayout(context: PageContext, head: PageHead): { body: Box; items:
 }
 const COLUMN_MM = 68;
 /** Upright bars with their captions and the words below them, mm. */
-const UPRIGHT_MM = 140;
+const UPRIGHT_MM = 132;
 
 export function madeFor({ printer, printerName, unit }: PageContext): string {
   const name = printerName ?? printer.name;

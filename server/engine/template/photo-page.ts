@@ -7,7 +7,7 @@ import { ringBox } from '../geometry/ring.ts';
 import { moved, path, style, words } from './page-items.ts';
 import { finishedPage, madeFor } from './page-layout.ts';
 import type { PageContext } from './page-layout.ts';
-import { printableBox } from './printer.ts';
+import { drawableBox } from './printer.ts';
 import { FULL_BARS, levelBar } from './scale-check.ts';
 import { wrapText } from './text-width.ts';
 import type { PageDescription, PageItem, PrinterProfile } from './types.ts';
@@ -24,7 +24,7 @@ export function photoPage(printer: PrinterProfile): PageDescription {
   const rings = PHOTO_PAGE_MARKERS.map(markerRings);
   const markers = moved(rings.map((marker) => path(marker, 'marker', style.black)), middle.x, middle.y);
   const box = ringBox(rings.flat(2));
-  const reach = printableBox(printer);
+  const reach = drawableBox(printer);
   const held = box.x + middle.x >= reach.x && box.y + middle.y >= reach.y && box.x + box.w + middle.x <= reach.x + reach.w && box.y + box.h + middle.y <= reach.y + reach.h;
   if (!held) throw new RangeError(`The photo page needs paper on which ${box.w} × ${box.h} mm in the middle can be printed; this is ${printer.paper.widthMm} × ${printer.paper.heightMm} mm with its margins.`);
   return finishedPage(context, 'Photo page', [...markers, ...moved(wordItems(context), middle.x, middle.y), ...barItems(reach.y + reach.h - middle.y, middle)]);

@@ -7,12 +7,13 @@
 import type { Box, Point } from '../geometry/types.ts';
 import type { PageDescription, PrinterProfile } from './types.ts';
 
-export function checkPrinter({ paper, unprintable, scale, shift }: PrinterProfile): void {
+export function checkPrinter(printer: PrinterProfile): void {
+  const { paper, unprintable, scale, shift } = printer;
   const figures = { ...paper, ...scale };
   for (const [key, value] of Object.entries(figures)) if (!(Number.isFinite(value) && value > 0)) throw new RangeError(`A printer's ${key} is more than 0, not ${value}.`);
   for (const [key, value] of Object.entries(unprintable)) if (!(Number.isFinite(value) && value >= 0)) throw new RangeError(`An unprintable margin (${key}) is 0 or more, not ${value}.`);
   for (const [key, value] of Object.entries(shift)) if (!Number.isFinite(value)) throw new RangeError(`A printer's shift (${key}) is a length, not ${value}.`);
-  const { w, h } = printableBox({ paper, unprintable });
+  const { w, h } = drawableBox(printer);
   if (w < LEAST_SIDE_MM || h < LEAST_SIDE_MM) throw new RangeError(`The margins leave only ${w} × ${h} mm of the paper to print on; a page needs ${LEAST_SIDE_MM} mm each way.`);
 }
 /** A 50 mm bar and its words must find room. */
@@ -24,6 +25,17 @@ export function printableBox({ paper, unprintable }: Pick<PrinterProfile, 'paper
     x: unprintable.left, y: unprintable.top,
     w: paper.widthMm - unprintable.left - unprintable.right, h: paper.heightMm - unprintable.top - unprintable.bottom,
   };
+}
+
+/**
+ * What of that can be drawn, too: a printer that prints small or shifted would need lines beyond the edge of the drawn page, which has the paper's size.
+ * In printed places the drawn page reaches from shift to scale · size + shift.
+ */
+export function drawableBox(printer: PrinterProfile): Box {
+  const { paper, scale, shift } = printer;
+  const { x, y, w, h } = printableBox(printer);
+  const left = Math.max(x, shift.x), top = Math.max(y, shift.y);
+  return { x: left, y: top, w: Math.min(x + w, scale.x * paper.widthMm + shift.x) - left, h: Math.min(y + h, scale.y * paper.heightMm + shift.y) - top };
 }
 
 export function correctedPage(page: PageDescription, { scale, shift }: PrinterProfile): PageDescription {
