@@ -30,6 +30,8 @@ const SPECK_MM = 0.12;
 /** Blur makes specks look larger, not heavier: one no larger than this counts by the disc that its ink would fill. */
 const BLURRED_DUST_MM = 0.45;
 const EDGE_PX = 2;
+/** A paper's edge shows as a line thinner than this, longer than the first share of the picture, or along its border than the second. */
+const EDGE_LINE_MM = 1, LONG_SHARE = 0.5, ALONG_BORDER = 0.75;
 
 export function findParts(map: InkMap, polygon: readonly Point[] | null, mmPerPx: number | null): ReadPart[] {
   const mask = maskInk(map);
@@ -44,7 +46,26 @@ export function findParts(map: InkMap, polygon: readonly Point[] | null, mmPerPx
     const outlinePx = { rings: rings.filter((ring, i) => i === 0 || ring.length >= 3) };
     parts.push({ id: parts.length, boxPx: outlineBox(outlinePx), areaPx2: piece.pixels, areaMm2: null, outlinePx, thinnestStrokeMm: null });
   }
-  return parts;
+  return withoutPaperEdges(parts, mask.width, mask.height, scale).map((part, id) => ({ ...part, id }));
+}
+
+/**
+ * Shadow lines along a paper's edges: thin, open (a frame is closed), and round everything else or along a border of the picture. What stands alone
+ * in a picture is never taken for one.
+ */
+function withoutPaperEdges(parts: ReadPart[], width: number, height: number, mmPerPx: number): ReadPart[] {
+  const most = EDGE_LINE_MM / mmPerPx;
+  const suspects = parts.filter(({ boxPx: b, areaPx2, outlinePx }) => outlinePx.rings.length === 1 && (b.w > LONG_SHARE * width || b.h > LONG_SHARE * height) && areaPx2 < most * (b.w + b.h));
+  const others = parts.filter((part) => !suspects.includes(part));
+  if (suspects.length === 0 || others.length === 0) return parts;
+  const rest = outlineBox({ rings: others.flatMap((part) => part.outlinePx.rings) });
+  const isEdge = ({ boxPx: b }: ReadPart) => {
+    const round = b.x <= rest.x && b.y <= rest.y && b.x + b.w >= rest.x + rest.w && b.y + b.h >= rest.y + rest.h;
+    const outside = b.x > rest.x + rest.w || b.x + b.w < rest.x || b.y > rest.y + rest.h || b.y + b.h < rest.y;
+    const along = Math.max(b.w / width, b.h / height) > ALONG_BORDER;
+    return round || (outside && along);
+  };
+  return parts.filter((part) => !suspects.includes(part) || !isEdge(part));
 }
 
 /** Outlines are stored and sent; digits beyond a hundredth of a pixel say nothing. */

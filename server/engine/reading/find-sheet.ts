@@ -38,6 +38,8 @@ const LEAST_PAPER = 0.12, FILLS = 0.985;
 const LEAST_DARKER = 0.3, LEAST_DEEP = 0.45, DEEP = 0.5;
 /** Share of its hull that a four-sided surface fills, and share of a hull's area that its best four corners keep. */
 const QUAD_FILL = 0.93;
+/** Cells within this share of the paper's brightness look like it; more than that share of all beyond its edge, and it is no edge. */
+const ALIKE = 0.08, GOES_ON = 0.3;
 /** A paper on another must hold this share of what stands out on both. */
 const HOLDS_DETAIL = 0.7;
 
@@ -60,7 +62,7 @@ export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
   const ground = surfaces.reduce((widest, s) => (hullArea(s) > hullArea(widest) ? s : widest));
   const paper = surfaces.find((inner) => inner !== ground && liesOn(cells, labels, inner, ground)) ?? ground;
   const hullCells = hullArea(paper);
-  if (hullCells > FILLS * total) return null;
+  if (hullCells > FILLS * total || goesOnBeyond(cells, paper)) return null;
 
   const quad = bestQuad(paper.hull);
   const px = (p: Point) => ({ x: p.x * cells.factor, y: p.y * cells.factor });
@@ -69,6 +71,19 @@ export function findSheet(pixels: Pixels, region: Region): FoundSheet | null {
     return { polygon: insetPolygon(corners, Math.max(3, cells.factor / 2)), corners };
   }
   return { polygon: insetPolygon(paper.hull.map(px), 1.5 * cells.factor), corners: null };
+}
+
+/** Beyond a paper's edge all is different; where it looks the same, a frame or a row of letters was taken for the edge. */
+function goesOnBeyond({ columns, rows, known, uneven, colours }: Cells, paper: Surface): boolean {
+  let beyond = 0, alike = 0;
+  for (let row = 0, i = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++, i++) {
+      if (!known[i] || uneven[i] || ringContains(paper.hull, { x: column + 0.5, y: row + 0.5 })) continue;
+      beyond++;
+      if (Math.abs(luminance(colours[3 * i], colours[3 * i + 1], colours[3 * i + 2]) - paper.level) < ALIKE * paper.level) alike++;
+    }
+  }
+  return alike > GOES_ON * beyond;
 }
 
 function hullArea(surface: Surface): number {

@@ -49,7 +49,7 @@ export function regroup(reading: Reading, groupingGap: number | 'auto', correcti
     parts,
     undivided,
     links: links.map((l) => ({ a: parts[l.a].id, b: parts[l.b].id, gapMm: scale === null ? null : l.distance, gapPx: sheet.pxDistance(l.from, l.to) })),
-    sentiments: describe(parts, outlines, groups, scale !== null),
+    sentiments: describe(parts, outlines, groups, scale),
     grouping: { gap: groupingGap, corrections },
   };
 }
@@ -174,13 +174,13 @@ function groupParts(parts: readonly ReadPart[], kept: readonly number[], links: 
   return [...groups.values()];
 }
 
-function describe(parts: readonly ReadPart[], outlines: readonly Outline[], groups: readonly number[][], scaled: boolean): ReadSentiment[] {
-  const leans = findLeans(groups.map((group) => group.map((i) => outlines[i])));
+function describe(parts: readonly ReadPart[], outlines: readonly Outline[], groups: readonly number[][], mmPerPx: number | null): ReadSentiment[] {
+  const leans = findLeans(groups.map((group) => group.map((i) => outlines[i])), mmPerPx ?? 1);
   const sentiments = groups.map((group, g): ReadSentiment => {
     const own = group.map((i) => parts[i]);
     const boxPx = outlineBox({ rings: own.flatMap((part) => part.outlinePx.rings) });
     const partIds = own.map((part) => part.id), angleDeg = leans[g];
-    if (!scaled) return { partIds, boxPx, widthMm: null, heightMm: null, angleDeg, outline: null, inkAreaMm2: null, thinnestStrokeMm: null };
+    if (mmPerPx === null) return { partIds, boxPx, widthMm: null, heightMm: null, angleDeg, outline: null, inkAreaMm2: null, thinnestStrokeMm: null };
     const level = levelOutline(group.map((i) => outlines[i]), angleDeg), box = outlineBox(level);
     const strokes = own.map((part) => part.thinnestStrokeMm).filter((w) => w !== null);
     return {

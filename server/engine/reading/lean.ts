@@ -22,6 +22,8 @@ const UNEVENNESS = 0.06;
 const MAX_FEET = 100;
 /** A lean within this many standard errors of 0 is none; nor is one as small as the unevenness of type itself can feign. */
 const SURE_ERRORS = 3, LEAST_LEAN_DEG = 0.08;
+/** Feet of type drawn in pixels stand this share of one off, from one end of the widest sentiment to the other. */
+const RESOLVED_PX = 0.6;
 const OWN_LEAN_DEG = 2, OWN_AGREEMENT_DEG = 1;
 /** How many times better feet and heads must line up at a sentiment's own lean than at the sheet's. */
 const OWN_BETTER = 1.6;
@@ -30,9 +32,12 @@ const OWN_LEAST_FEET = 5;
 interface Pair { dx: number; dy: number; weight: number; width: number }
 interface Votes { feet: Pair[]; heads: Pair[]; count: number }
 
-export function findLeans(sentiments: readonly Outline[][]): number[] {
+/** `resolution`: size of a pixel in the outlines' unit, below which feet cannot be told apart. */
+export function findLeans(sentiments: readonly Outline[][], resolution = 0): number[] {
   const votes = sentiments.map(votesOf);
-  const common = surely(votes.map((v) => [...v.feet, ...v.heads]));
+  const widest = Math.max(0, ...sentiments.map(widthOf));
+  const leastDeg = widest > 0 ? Math.max(LEAST_LEAN_DEG, (Math.atan(RESOLVED_PX * resolution / widest) * 180) / Math.PI) : LEAST_LEAN_DEG;
+  const common = surely(votes.map((v) => [...v.feet, ...v.heads]), leastDeg);
   return votes.map((own) => ownLean(own, common) ?? common);
 }
 
@@ -47,7 +52,7 @@ function ownLean({ feet, heads, count }: Votes, common: number): number | null {
 }
 
 /** The lean common to all, or 0. */
-function surely(votes: readonly Pair[][]): number {
+function surely(votes: readonly Pair[][], leastDeg: number): number {
   const { angleDeg } = bestLean(votes.flat());
   const slope = Math.tan((angleDeg * Math.PI) / 180);
   let spread = 0, curvature = 0;
@@ -61,7 +66,7 @@ function surely(votes: readonly Pair[][]): number {
     spread += pull * pull;
   }
   const errorDeg = curvature < 0 ? ((Math.sqrt(spread) / -curvature) * 180) / Math.PI : Infinity;
-  return Math.abs(angleDeg) > Math.max(LEAST_LEAN_DEG, SURE_ERRORS * errorDeg) ? rounded(angleDeg) : 0;
+  return Math.abs(angleDeg) > Math.max(leastDeg, SURE_ERRORS * errorDeg) ? rounded(angleDeg) : 0;
 }
 
 function rounded(angleDeg: number): number {
@@ -92,10 +97,29 @@ function score(pairs: readonly Pair[], angleDeg: number): number {
 }
 
 function votesOf(parts: readonly Outline[]): Votes {
-  const heights = parts.map(heightOf).sort((a, b) => a - b);
+  const letters = parts.filter((part) => !isRule(part));
+  const heights = letters.map(heightOf).sort((a, b) => a - b);
   const height = heights[heights.length >> 1] || 1;
-  const feet = parts.flatMap((part) => extremes(part, 1)), heads = parts.flatMap((part) => extremes(part, -1));
-  return { feet: pairsOf(feet, height), heads: pairsOf(heads, height), count: Math.min(feet.length, heads.length) };
+  const feet = letters.flatMap((part) => extremes(part, 1)), heads = letters.flatMap((part) => extremes(part, -1));
+  const rules = parts.filter(isRule).map(endsOf);
+  return { feet: [...pairsOf(feet, height), ...rules], heads: [...pairsOf(heads, height), ...rules], count: Math.min(feet.length, heads.length) };
+}
+
+/** Long and thin: a rule or a wave under words. It has no feet, but leans itself. */
+function isRule(part: Outline): boolean {
+  return heightOf(part) < RULE_SHARE * widthOf([part]);
+}
+const RULE_SHARE = 0.2;
+
+function endsOf(part: Outline): Pair {
+  const ring = part.rings[0], left = ring.reduce((a, b) => (b.x < a.x ? b : a)), right = ring.reduce((a, b) => (b.x > a.x ? b : a));
+  return { dx: right.x - left.x, dy: right.y - left.y, weight: right.x - left.x, width: Math.max(UNEVENNESS * heightOf(part), 1e-3 * (right.x - left.x)) };
+}
+
+function widthOf(parts: readonly Outline[]): number {
+  let left = Infinity, right = -Infinity;
+  for (const part of parts) for (const { x } of part.rings[0]) { left = Math.min(left, x); right = Math.max(right, x); }
+  return Math.max(0, right - left);
 }
 
 function pairsOf(all: readonly Point[], height: number): Pair[] {

@@ -16,5 +16,14 @@ export function renderSheet(widthMm: number, heightMm: number, pxPerMm: number, 
   const ground = paper === null ? '' : `<rect width="${width}" height="${height}" fill="${paper}"/>`;
   const svg = `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${height}">${ground}<g transform="scale(${pxPerMm})">${paths}</g></svg>`;
   const image = new Resvg(svg).render();
-  return { width: image.width, height: image.height, rgba: new Uint8Array(image.pixels) };
+  return { width: image.width, height: image.height, rgba: straightAlpha(new Uint8Array(image.pixels)) };
+}
+
+/** The renderer hands out colours multiplied by their alpha; picture files hold them as they are. */
+function straightAlpha(rgba: Uint8Array): Uint8Array {
+  for (let i = 3; i < rgba.length; i += 4) {
+    const alpha = rgba[i];
+    if (alpha > 0 && alpha < 255) for (let c = i - 3; c < i; c++) rgba[c] = Math.min(255, Math.round((rgba[c] * 255) / alpha));
+  }
+  return rgba;
 }
