@@ -97,6 +97,8 @@ function unionBox(rings: readonly Ring[]): Box {
 
 /** Directions of a hull with few corners: with 32 a circle of 40 mm across gains 0.1 mm, and sums of two have no more. */
 const DIRECTIONS = 32;
+/** Directions whose cosine is nearer to 1 than this are one. */
+const SAME_DIRECTION = 1e-10;
 /** Edges longer than this share of the way round keep their own direction. */
 const LONG_EDGE_SHARE = 0.06;
 
@@ -113,7 +115,8 @@ export function fewCorners(hull: Ring): Ring {
   });
   normals.push(...edges.filter((edge) => edge.length > LONG_EDGE_SHARE * round));
   normals.sort((a, b) => Math.atan2(a.y, a.x) - Math.atan2(b.y, b.x));
-  const distinct = normals.filter((n, i) => i === 0 || n.x * normals[i - 1].x + n.y * normals[i - 1].y < 1 - 1e-10);
+  // Round the circle: the first and the last can be one direction as well (π and −π).
+  const distinct = normals.filter((n, i) => { const before = normals[(i + normals.length - 1) % normals.length]; return n.x * before.x + n.y * before.y < 1 - SAME_DIRECTION; });
   const support = distinct.map((n) => hull.reduce((far, p) => Math.max(far, p.x * n.x + p.y * n.y), -Infinity));
   const ring: Ring = [];
   distinct.forEach((n, i) => {
