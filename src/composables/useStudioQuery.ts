@@ -13,20 +13,25 @@ interface StudioQueryOptions<T> {
   key?: MaybeRefOrGetter<EntryKey>;
   read: (studioId: string) => Promise<T>;
   enabled?: MaybeRefOrGetter<boolean>;
+  /**
+   * Shows the answer to the key before while that to the new one comes. Lists and searches (keys that begin with 'list' or 'search') do,
+   * so that nothing jumps; a thing does not, or one batch would stand under the address of another.
+   */
+  keepShown?: boolean;
 }
+const KEPT: readonly unknown[] = ['list', 'search'];
 
 /**
  * Data of the studio at hand. Asked for again when the server tells that the noun changed, whoever changed it.
  * `data`, `error`, `status` ('pending' | 'error' | 'success'), `isLoading`, `refetch` as Pinia Colada gives them.
  */
-export function useStudioQuery<T>({ noun, key, read, enabled }: StudioQueryOptions<T>): UseQueryReturn<T, ApiError> {
+export function useStudioQuery<T>({ noun, key, read, enabled, keepShown }: StudioQueryOptions<T>): UseQueryReturn<T, ApiError> {
   const { id } = storeToRefs(useStudio());
   return useQuery<T, ApiError>({
     key: () => studioKey(id.value ?? '', noun, ...(toValue(key) ?? [])),
     query: () => read(id.value!),
     enabled: () => id.value !== null && (toValue(enabled) ?? true),
-    // A list keeps its rows while the next page comes, so that nothing jumps.
-    placeholderData: (previous) => previous as undefined,
+    placeholderData: (previous) => (keepShown ?? KEPT.includes(toValue(key)?.[0])) ? (previous as undefined) : undefined,
   });
 }
 
