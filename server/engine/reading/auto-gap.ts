@@ -50,7 +50,7 @@ export function autoGap(links: readonly Link[], outlines: readonly Outline[]): n
  * A sheet of few sentiments far apart needs no weighing, and has too few links for it: from one link to the next the gap grows by
  * CLEAR_STEP, to more than CLEAR_CORES letter heights, which no line of a wording keeps from the next.
  */
-const CLEAR_STEP = 4, CLEAR_CORES = 2, TALL_RANK = 0.9;
+const CLEAR_STEP = 2.8, CLEAR_CORES = 1.5, TALL_RANK = 0.9;
 
 function plainStep(sorted: readonly Link[], clusters: readonly Cluster[]): number | null {
   const cores = clusters.map(({ core }) => core).sort((a, b) => a - b), tall = cores[Math.floor(TALL_RANK * (cores.length - 1))];
