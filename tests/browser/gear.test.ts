@@ -58,6 +58,7 @@ describe('an ink', () => {
 
   it('shows at once what another person changed, but never under what is being typed', async () => {
     await page.getByRole('link', { name: 'Plum' }).click();
+    await page.getByRole('heading', { name: 'Plum', level: 1 }).waitFor();
     const other = await kit.openAs('maker', new URL(page.url()).pathname.split('/').slice(3).join('/'));
     await note(other).fill('first word of the other');
     await other.getByRole('button', { name: 'Save' }).click();
