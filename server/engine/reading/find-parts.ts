@@ -32,6 +32,8 @@ const BLURRED_DUST_MM = 0.45;
 const EDGE_PX = 2;
 /** A paper's edge shows as a line thinner than this, longer than the first share of the picture, or along its border than the second. */
 const EDGE_LINE_MM = 1, LONG_SHARE = 0.5, ALONG_BORDER = 0.75;
+/** A straight line that leans by up to 8° is no wider than this share of its length; letters are. */
+const SLENDER = 0.15;
 
 export function findParts(map: InkMap, polygon: readonly Point[] | null, mmPerPx: number | null): ReadPart[] {
   const mask = maskInk(map);
@@ -62,7 +64,7 @@ function withoutPaperEdges(parts: ReadPart[], width: number, height: number, mmP
   const isEdge = ({ boxPx: b }: ReadPart) => {
     const round = b.x <= rest.x && b.y <= rest.y && b.x + b.w >= rest.x + rest.w && b.y + b.h >= rest.y + rest.h;
     const outside = b.x > rest.x + rest.w || b.x + b.w < rest.x || b.y > rest.y + rest.h || b.y + b.h < rest.y;
-    const along = Math.max(b.w / width, b.h / height) > ALONG_BORDER;
+    const along = Math.max(b.w / width, b.h / height) > ALONG_BORDER && Math.min(b.w, b.h) < SLENDER * Math.max(b.w, b.h);
     return round || (outside && along);
   };
   return parts.filter((part) => !suspects.includes(part) || !isEdge(part));

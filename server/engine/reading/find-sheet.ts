@@ -28,6 +28,8 @@ export interface FoundSheet {
 const CELLS_ALONG = 320, CELL_SAMPLES = 4;
 /** Neighbouring cells that differ by less are one surface: half of what counts as ink, since an edge may fall across a cell. */
 const SAME_SURFACE = 0.045;
+/** Nor do steps part a surface that are this many times the usual one between cells: grain, which weighs more the darker the paper. */
+const GRAIN_TIMES = 3;
 /** Of the dark the eye and the sensor tell little: differences below this brightness count from it. */
 const DARK = 40;
 /** A cell whose brightness spreads by more than this share, and by this many times the usual, has an edge in it. */
@@ -132,11 +134,14 @@ function sampleCell(pixels: Pixels, x0: number, y0: number, factor: number, colo
 
 function growSurfaces({ columns, rows, colours, known, uneven }: Cells): Int32Array {
   const sets = new DisjointSets(columns * rows);
+  const steps: number[] = [];
+  for (let i = 1; i < columns * rows; i++) if (known[i] && known[i - 1] && !uneven[i] && !uneven[i - 1]) steps.push(Math.abs(colours[3 * i + 1] - colours[3 * i - 2]));
+  const grain = GRAIN_TIMES * (steps.sort((a, b) => a - b)[steps.length >> 1] ?? 0);
   const same = (i: number, j: number) => {
     if (!known[i] || !known[j] || uneven[i] || uneven[j]) return false;
     for (let c = 0; c < 3; c++) {
       const p = colours[3 * i + c], q = colours[3 * j + c];
-      if (Math.abs(p - q) > SAME_SURFACE * Math.max(p, q, DARK)) return false;
+      if (Math.abs(p - q) > Math.max(grain, SAME_SURFACE * Math.max(p, q, DARK))) return false;
     }
     return true;
   };

@@ -21,7 +21,7 @@ export interface InkMask {
 }
 
 /** As wide as an edge's blur reaches: full ink is seen within it. At least that of a good scan, at most half of a small letter's white. */
-const REACH_PX = { least: 2, most: 6 }, REACH_BLURS = 2.2;
+const REACH_PX = { least: 2, most: 6 }, REACH_BLURS = 1.5;
 /** Every so-many-th pixel is asked for the blur. */
 const BLUR_STRIDE = 7;
 /** Fainter than this share of the picture's usual ink is no ink beside it. */
@@ -52,7 +52,7 @@ function reachFor({ width, height, values }: InkMap): number {
     if (steepness > 0) blurs.push(INK_LEVEL / (steepness * Math.sqrt(2 * Math.PI)));
   }
   const blur = blurs.sort((a, b) => a - b)[blurs.length >> 1] ?? 0;
-  return Math.min(REACH_PX.most, Math.max(REACH_PX.least, Math.ceil(REACH_BLURS * blur)));
+  return Math.min(REACH_PX.most, Math.max(REACH_PX.least, Math.round(REACH_BLURS * blur)));
 }
 
 export function fieldAt(mask: InkMask, x: number, y: number): number {
