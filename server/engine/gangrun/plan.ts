@@ -23,6 +23,7 @@ import { orderShapes } from './place-geometry.ts';
 import type { OrderShapes } from './place-geometry.ts';
 import { makePlan } from './presses.ts';
 import { packRectangles } from './rectangles.ts';
+import { relax } from './relax.ts';
 import { addCopies, fillSetups, shareCounts, toSetupDraft } from './setups.ts';
 import type { DraftSetup } from './setups.ts';
 import { allowedTurns, sheetFrame } from './sheet-frame.ts';
@@ -37,6 +38,11 @@ const BASE_STEPS = 150_000;
 const STEPS_PER_KIND = 25_000;
 /** Drafts that bring nothing new in a row, after which more of them are not worth their time. */
 const PATIENCE = 24;
+
+/** Pushing apart is for a sheet that is not too full, and for few labels. */
+const LOOSE = 0.88, MOST_RELAXED = 16;
+/** Starts of pushing apart in each attempt. */
+const STARTS = 4;
 
 type Made = Pick<RunPlan, 'setups' | 'cutPasses' | 'totals'>;
 interface Best { drafts: DraftSetup[]; made: Made }
@@ -114,14 +120,14 @@ class Search {
       const round = Math.floor(attempt / turnsList.length);
       const direction = DIRECTIONS[round % DIRECTIONS.length];
       const kinds = preference(this.kinds, order.aim, Math.floor(round / DIRECTIONS.length), next);
-      stale = this.attempt(turns, kinds, direction, round) ? 0 : stale + 1;
+      stale = this.attempt(turns, kinds, direction, round, next) ? 0 : stale + 1;
       this.control?.onProgress?.(Math.min(0.95, Math.max(stale / patience, 1 - this.budget.left / this.total)), 'Trying arrangements');
     }
     this.cutShort = this.isStopped() && !this.meetsBounds();
     return this.best;
   }
 
-  private attempt(turns: Setup['turns'], kinds: Kind[], direction: Direction, round: number): boolean {
+  private attempt(turns: Setup['turns'], kinds: Kind[], direction: Direction, round: number, next: () => number): boolean {
     let better = false;
     for (const space of this.spaces(turns)) {
       const whole = round === 0 && this.pinned.length === 0 ? packRectangles(space, this.shapes, kinds) : null;
@@ -130,9 +136,28 @@ class Search {
       if (this.offer(drafts)) better = true;
       if (this.offer(this.withCopies(space, drafts, direction))) better = true;
       if (drafts.length > 1 && this.pinned.length === 0 && this.offer(spreadSetups(space, kinds, direction))) better = true;
+      if (drafts.length > 1 && this.mayShare(turns) && this.offer(this.pushedApart(space, kinds, next))) better = true;
       if (this.budget.stopped()) break;
     }
     return better;
+  }
+
+  /** All kinds in one setup is only worth trying where their labels cover the sheet loosely enough, and where no stamp is missing. */
+  private mayShare(turns: Setup['turns']): boolean {
+    if (this.pinned.length > 0 || this.kinds.length > MOST_RELAXED) return false;
+    const { inner } = this.frame;
+    const covered = this.kinds.reduce((sum, kind) => sum + kind.poses[0].leastAreaMm2 * turns, 0) / (inner.w * inner.h);
+    const used = new Map<string, number>();
+    for (const kind of this.kinds) for (const [id, n] of kind.stamps) used.set(id, (used.get(id) ?? 0) + n);
+    return covered < LOOSE && [...used].every(([id, n]) => n <= this.shapes.stamp(id).owned);
+  }
+
+  private pushedApart(space: PackingSpace, kinds: readonly Kind[], next: () => number): DraftSetup[] | null {
+    for (let start = 0; start < STARTS && !this.budget.stopped(); start++) {
+      const placed = relax(space, kinds, next);
+      if (placed) return [{ turns: space.turns, placed }];
+    }
+    return null;
   }
 
   /** Setups of a draft may each be turned otherwise: a setup that fits once more takes fewer sheets. */
