@@ -3,6 +3,7 @@ import { checkDie, DIE_SHAPES, startingShape } from '../../../server/engine/fit/
 import type { DieShapeEntry } from '../../../server/engine/fit/die-shapes.ts';
 import { nestedSizes } from '../../../server/engine/fit/die-sizes.ts';
 import type { DieGeometry, DieShape } from '../../../server/engine/fit/types.ts';
+import { MM_PER_INCH } from '../../../server/engine/geometry/units.ts';
 import type { LengthUnit } from '../../../server/engine/geometry/units.ts';
 import type { Die, NewDie } from '../../api/dies.ts';
 
@@ -31,8 +32,12 @@ function parametersOf(shape: DieShape): Record<string, Parameter> {
   return rest;
 }
 
-export function blankDie(form = 'rectangle'): DieFormValues {
-  return { form, parameters: parametersOf(startingShape(form)), own: null, name: '', stitchInsetMm: null, rimMm: null, owned: 1, sizes: 1, stepMm: 10 };
+/** Where a form starts: round figures in the person's unit. */
+const START_MM = { mm: { widthMm: 70, heightMm: 40, stepMm: 10 }, in: { widthMm: 2.75 * MM_PER_INCH, heightMm: 1.5 * MM_PER_INCH, stepMm: 0.375 * MM_PER_INCH } };
+
+export function blankDie(unit: LengthUnit): DieFormValues {
+  const { stepMm, ...size } = START_MM[unit];
+  return { form: 'rectangle', parameters: { ...parametersOf(startingShape('rectangle')), ...size }, own: null, name: '', stitchInsetMm: null, rimMm: null, owned: 1, sizes: 1, stepMm };
 }
 
 /** Another shape keeps the size that was typed. */
@@ -46,7 +51,7 @@ export function withForm(values: DieFormValues, form: string): DieFormValues {
 
 export function fromDie({ geometry, name, owned }: Die): DieFormValues {
   const { shape } = geometry;
-  const base = { ...blankDie(), name, owned, stitchInsetMm: geometry.stitchInsetMm ?? null, rimMm: geometry.rimMm ?? null, sizes: 1 };
+  const base = { ...blankDie('mm'), name, owned, stitchInsetMm: geometry.stitchInsetMm ?? null, rimMm: geometry.rimMm ?? null, sizes: 1 };
   if (shape.kind === 'outline') return { ...base, form: OWN_FORM, parameters: {}, own: shape };
   const equal = shape.widthMm === shape.heightMm;
   const entry = DIE_SHAPES.find((row) => row.kind === shape.kind && (row.equalSides ?? false) === equal) ?? DIE_SHAPES.find((row) => row.kind === shape.kind)!;
@@ -68,6 +73,10 @@ export function dieErrors(values: DieFormValues, unit: LengthUnit): Record<strin
   if (values.owned === null) errors.owned = 'How many are owned? 0 for one that is only wished for.';
   if (values.sizes === null) errors.sizes = 'How many sizes are in the set?';
   else if (values.sizes > 1 && !(values.stepMm !== null && values.stepMm > 0)) errors.stepMm = 'By how much is each size smaller than the one around it?';
+  else if (Object.keys(errors).length === 0 && values.sizes > 1) {
+    const possible = nestedSizes(toGeometry(values).shape, values.stepMm!, values.sizes).length;
+    if (possible < values.sizes) errors.stepMm = `Only ${possible} of these ${values.sizes} sizes can be made: take a smaller step or fewer sizes.`;
+  }
   return errors;
 }
 
