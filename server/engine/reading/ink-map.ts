@@ -69,15 +69,25 @@ function paperRow(pixels: Pixels, paper: PaperGrid) {
   const { width, rgba } = pixels;
   const { tilePx, columns, rows, colours } = paper;
   const inverse = new Float32Array(3 * width);
-  const line = new Float32Array(3 * columns);
+  // One column more than there are, so that the last tile has a neighbour too.
+  const line = new Float32Array(3 * (columns + 1));
+  const tileAt = new Int32Array(width), share = new Float32Array(width);
+  for (let x = 0; x < width; x++) {
+    const u = Math.min(columns - 1, Math.max(0, (x + 0.5) / tilePx - 0.5));
+    tileAt[x] = 3 * Math.floor(u);
+    share[x] = u - Math.floor(u);
+  }
   const [wr, wg, wb] = WEIGHTS;
 
   function load(y: number): void {
     const v = Math.min(rows - 1, Math.max(0, (y + 0.5) / tilePx - 0.5)), r0 = Math.floor(v), r1 = Math.min(rows - 1, r0 + 1), f = v - r0;
     for (let i = 0; i < 3 * columns; i++) line[i] = 1 / (colours[3 * columns * r0 + i] * (1 - f) + colours[3 * columns * r1 + i] * f);
-    for (let x = 0; x < width; x++) {
-      const u = Math.min(columns - 1, Math.max(0, (x + 0.5) / tilePx - 0.5)), c0 = Math.floor(u), c1 = Math.min(columns - 1, c0 + 1), g = u - c0;
-      for (let c = 0; c < 3; c++) inverse[3 * x + c] = line[3 * c0 + c] * (1 - g) + line[3 * c1 + c] * g;
+    for (let c = 0; c < 3; c++) line[3 * columns + c] = line[3 * columns - 3 + c];
+    for (let x = 0, to = 0; x < width; x++, to += 3) {
+      const t = tileAt[x], g = share[x];
+      inverse[to] = line[t] + (line[t + 3] - line[t]) * g;
+      inverse[to + 1] = line[t + 1] + (line[t + 4] - line[t + 1]) * g;
+      inverse[to + 2] = line[t + 2] + (line[t + 5] - line[t + 2]) * g;
     }
   }
   function difference(x: number, y: number): number {

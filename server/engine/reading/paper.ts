@@ -69,21 +69,29 @@ export function estimatePaper(pixels: Pixels, region: Region): PaperGrid {
   return { tilePx, columns, rows, colours: levelOutInk(raw, spread, columns, rows), inkIsDarker };
 }
 
+/** More places than any picture has pixels, and steps per level of brightness: both fit a double's 53 bits. */
+const PLACES = 2 ** 28, BRIGHTNESS_STEPS = 64;
+
 /** Samples as luminance, red, green, blue, in ascending order of luminance; none for a tile outside the region. */
 function sampleTile(pixels: Pixels, region: Region, x0: number, y0: number, tilePx: number): Float32Array {
   const x1 = Math.min(pixels.width, x0 + tilePx), y1 = Math.min(pixels.height, y0 + tilePx);
   const step = Math.max(1, Math.floor(tilePx / SAMPLES_ALONG));
-  const found: { l: number; at: number }[] = [];
+  // Brightness and place in one number, so that the sort is one of plain numbers.
+  const keys = new Float64Array((Math.ceil((y1 - y0) / step) + 1) * (Math.ceil((x1 - x0) / step) + 1));
+  let n = 0;
   for (let y = Math.min(y1 - 1, y0 + ((step - 1) >> 1)); y < y1; y += step) {
     const last = Math.min(x1, region.to[y]);
     for (let x = Math.max(Math.min(x1 - 1, x0 + ((step - 1) >> 1)), region.from[y]); x < last; x += step) {
       const at = 4 * (y * pixels.width + x);
-      found.push({ l: luminance(pixels.rgba[at], pixels.rgba[at + 1], pixels.rgba[at + 2]), at });
+      keys[n++] = Math.round(luminance(pixels.rgba[at], pixels.rgba[at + 1], pixels.rgba[at + 2]) * BRIGHTNESS_STEPS) * PLACES + at / 4;
     }
   }
-  found.sort((a, b) => a.l - b.l);
-  const sorted = new Float32Array(4 * found.length);
-  found.forEach(({ l, at }, i) => sorted.set([l, pixels.rgba[at], pixels.rgba[at + 1], pixels.rgba[at + 2]], 4 * i));
+  const sorted = new Float32Array(4 * n);
+  keys.subarray(0, n).sort().forEach((key, i) => {
+    const at = 4 * (key % PLACES);
+    sorted[4 * i] = Math.floor(key / PLACES) / BRIGHTNESS_STEPS;
+    for (let c = 0; c < 3; c++) sorted[4 * i + 1 + c] = pixels.rgba[at + c];
+  });
   return sorted;
 }
 
