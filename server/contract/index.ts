@@ -1,6 +1,7 @@
 /** All routes of the API. A noun's table is added here once. */
 import { accountRoutes } from './account.ts';
 import { batchRoutes } from './batches.ts';
+import { benchRoutes } from './bench.ts';
 import { dieRoutes } from './dies.ts';
 import { gearRoutes } from './gear.ts';
 import { jobRoutes, serverRoutes } from './jobs.ts';
@@ -8,4 +9,4 @@ import { planRoutes } from './plans.ts';
 import { stampSetRoutes } from './stamp-sets.ts';
 import { studioRoutes } from './studio.ts';
 
-export const apiRoutes = { ...accountRoutes, ...studioRoutes, ...stampSetRoutes, ...dieRoutes, ...gearRoutes, ...batchRoutes, ...planRoutes, ...jobRoutes, ...serverRoutes } as const;
+export const apiRoutes = { ...accountRoutes, ...studioRoutes, ...stampSetRoutes, ...dieRoutes, ...gearRoutes, ...batchRoutes, ...planRoutes, ...benchRoutes, ...jobRoutes, ...serverRoutes } as const;
