@@ -17,7 +17,7 @@ import { DisjointSets, type Link } from './gaps.ts';
 import { evidence } from './merge-evidence.ts';
 
 /** Natural logarithms of odds, chosen on the tuning half of the corpus. */
-const EVIDENCE_LIMIT = 4, CLEARANCE_WORTH = 2, SAME_AS_ONE_GAP = 4, PER_SENTIMENT = 1, CLEARLY = 5;
+const EVIDENCE_LIMIT = 4, CLEARANCE_WORTH = 2, SAME_AS_ONE_GAP = 4, PER_SENTIMENT = 1, CLEARLY = 10;
 /** Clearance beyond twice the inner gap says no more; a part alone counts as if it had an inner gap of this share of its letter height. */
 const CLEARANCE_LIMIT = Math.log(2), LONE_PART = 0.3;
 /** The whole sheet has no neighbour: as if it stood clear by this factor. */
