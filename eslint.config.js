@@ -5,7 +5,7 @@ import pluginVue from 'eslint-plugin-vue';
 import tseslint from 'typescript-eslint';
 
 /** Kernels that the browser runs too; the client imports these files and no other part of the engine. */
-const kernels = ['geometry/**', 'fit/**', 'gangrun/{layout,place-geometry,sheet-frame,strips}.ts', 'reading/grouping.ts', 'template/document.ts', '**/types.ts', 'control.ts'];
+const kernels = ['geometry/**', 'fit/**', 'gangrun/{layout,place-geometry,sheet-frame,strips}.ts', 'reading/grouping.ts', 'template/document.ts', 'template/page-svg.ts', '**/types.ts', 'control.ts'];
 
 const forbid = (target, from, message, except) => ({ target, from, message, ...(except ? { except } : {}) });
 

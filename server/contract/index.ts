@@ -8,5 +8,6 @@ import { jobRoutes, serverRoutes } from './jobs.ts';
 import { planRoutes } from './plans.ts';
 import { stampSetRoutes } from './stamp-sets.ts';
 import { studioRoutes } from './studio.ts';
+import { templateRoutes } from './templates.ts';
 
-export const apiRoutes = { ...accountRoutes, ...studioRoutes, ...stampSetRoutes, ...dieRoutes, ...gearRoutes, ...batchRoutes, ...planRoutes, ...benchRoutes, ...jobRoutes, ...serverRoutes } as const;
+export const apiRoutes = { ...accountRoutes, ...studioRoutes, ...stampSetRoutes, ...dieRoutes, ...gearRoutes, ...batchRoutes, ...planRoutes, ...templateRoutes, ...benchRoutes, ...jobRoutes, ...serverRoutes } as const;

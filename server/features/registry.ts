@@ -8,7 +8,8 @@ import { createDies } from './dies/dies.routes.ts';
 import { createGear } from './gear/gear.routes.ts';
 import { createStampSets } from './stamp-sets/stamp-sets.routes.ts';
 import { createStudio } from './studio/studio.routes.ts';
+import { createTemplates } from './templates/templates.routes.ts';
 
 export function createFeatures(deps: Deps): Feature[] {
-  return [createAccount(deps), createStudio(deps), createStampSets(deps), createDies(deps), createGear(deps), createBatches(deps), createBench(deps), createJobRoutes(deps)];
+  return [createAccount(deps), createStudio(deps), createStampSets(deps), createDies(deps), createGear(deps), createBatches(deps), createTemplates(deps), createBench(deps), createJobRoutes(deps)];
 }

@@ -6,6 +6,7 @@ import type { RunOrder } from '../engine/gangrun/types.ts';
 import type { Outline } from '../engine/geometry/types.ts';
 import type { Reading, ReadOptions } from '../engine/reading/types.ts';
 import type { PrinterPageRequest } from '../features/gear/printer-pages.ts';
+import type { TemplateRequest } from '../features/templates/template-pdf.ts';
 import type { Wishes } from '../features/stamp-sets/sentiment-follow.ts';
 
 type Task = (input: never, control: Control) => Promise<unknown>;
@@ -20,6 +21,8 @@ const all = {
   fitTable: async (input: { artworks: Outline[]; dies: DieGeometry[]; options?: FitOptions }) => (await import('../engine/fit/index.ts')).fitTable(input.artworks, input.dies, input.options),
   planGangRun: async (input: { order: RunOrder }, control) => (await import('../engine/gangrun/index.ts')).planGangRun(input.order, control),
   planCuts: async (input: { parts: CutPart[]; stock: { widthMm: number; heightMm: number }; options?: { trimMm?: number } }) => (await import('../engine/cutplan/index.ts')).planCuts(input.parts, input.stock, input.options),
+  templatePdf: async (input: TemplateRequest) => (await import('../features/templates/template-pdf.ts')).templatePdf(input),
+  templatePages: async (input: TemplateRequest) => (await import('../features/templates/template-pdf.ts')).templatePages(input),
   printerPage: async (input: PrinterPageRequest) => (await import('../features/gear/printer-pages.ts')).drawPrinterPage(input),
 } satisfies Record<string, Task>;
 

@@ -11,6 +11,7 @@ export const batchRoutes: RouteRecordRaw[] = [
       { path: 'choose', name: 'batch-choose', component: () => import('../../views/BatchChooseView.vue') },
       { path: 'fit', name: 'batch-fit', component: () => import('../../views/BatchFitView.vue') },
       { path: 'lay-out', name: 'batch-lay-out', component: () => import('../../views/BatchLayOutView.vue') },
+      { path: 'print', name: 'batch-print', component: () => import('../../views/BatchPrintView.vue') },
       { path: 'bench', name: 'batch-bench', component: () => import('../../views/BatchBenchView.vue') },
     ],
   },
