@@ -11,7 +11,13 @@ interface EditFormOptions<V extends object, R> {
   check?: (values: V) => Record<string, string>;
 }
 
-const copy = <T>(value: T): T => structuredClone(toRaw(value));
+/** Plain data all the way down: a value that was put together from reactive ones still has proxies inside, which cannot be cloned or sent. */
+function copy<T>(value: T): T {
+  const raw = toRaw(value) as unknown;
+  if (Array.isArray(raw)) return raw.map(copy) as T;
+  if (raw !== null && typeof raw === 'object' && Object.getPrototypeOf(raw) === Object.prototype) return Object.fromEntries(Object.entries(raw).map(([key, part]) => [key, copy(part)])) as T;
+  return raw as T;
+}
 const same = (a: unknown, b: unknown) => JSON.stringify(a) === JSON.stringify(b);
 
 /** Goes to the first field that has words beside it, in the form that was sent, so that they are seen and read out. */
