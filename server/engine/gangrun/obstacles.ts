@@ -50,9 +50,9 @@ export function obstacleMaker(shapes: OrderShapes, frame: SheetFrame, turns: Set
     const list: { turn: number; obstacle: Obstacle }[] = [];
     const put = (turn: number, a: Ring, b: Ring, reach: number) => list.push({ turn, obstacle: obstacle(noFitPolygon(a, b), reach) });
     for (const a of standing.labels) for (const b of coming.labels) put(0, a, b, gap);
-    for (const a of standing.shape.bodies) for (const b of coming.shape.bodies) put(0, a.hull, b.hull, a.trimMm + b.trimMm);
+    for (const a of standing.bodies) for (const b of coming.bodies) put(0, a.hull, b.hull, a.trimMm + b.trimMm);
     const clear = kindClearance(shapes, standing.kind, coming.kind);
-    if (clear > 0) put(0, standing.shape.ink, coming.shape.ink, clear);
+    if (clear > 0) put(0, standing.ink, coming.ink, clear);
     for (let turn = 1; turn < turns; turn++) {
       const angle = impressionAngle(turn, turns);
       for (const a of standing.labels) {
@@ -93,7 +93,7 @@ export function obstacleMaker(shapes: OrderShapes, frame: SheetFrame, turns: Set
       if (!list) ownKnown.set(pose.id, (list = makeOwn(pose)));
       return list;
     },
-    fixed: (pose) => order.platform.keepOuts.flatMap((box) => pose.shape.bodies.map((body) => obstacle(noFitPolygon(boxRing(box), body.hull), body.trimMm))),
+    fixed: (pose) => order.platform.keepOuts.flatMap((box) => pose.bodies.map((body) => obstacle(noFitPolygon(boxRing(box), body.hull), body.trimMm))),
   };
 }
 
