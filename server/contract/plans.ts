@@ -83,6 +83,12 @@ export const StockCutting = z.object({
 });
 export type StockCutting = z.infer<typeof StockCutting>;
 
+/** Result of the job that tries run sheets; best for the batch's aim first. */
+export const SheetComparison = z.object({
+  items: z.array(z.object({ widthMm: z.number(), heightMm: z.number(), /** Whole sheets of cardstock. */ stockSheets: z.int(), sheets: z.int(), presses: z.int(), minutes: z.number(), unplaced: z.int() })),
+});
+export type SheetComparison = z.infer<typeof SheetComparison>;
+
 export const planRoutes = routes({
   'GET /studios/:studioId/batches/:id/plans': { summary: 'Versions of the plan, newest first', access: 'helper', params: StudioItemParams, response: z.object({ items: z.array(PlanSummary) }) },
   'POST /studios/:studioId/batches/:id/plans': {
@@ -97,6 +103,7 @@ export const planRoutes = routes({
     response: JobAccepted,
   },
   'POST /studios/:studioId/batches/:id/plans/stop': { summary: 'End the planning under way with the best plan so far', access: 'maker', params: StudioItemParams },
+  'POST /studios/:studioId/batches/:id/sheet-sizes': { summary: 'Try the run sheets that the cardstock gives and the platform takes', access: 'maker', costly: true, params: StudioItemParams, status: 202, response: JobAccepted },
   'GET /studios/:studioId/batches/:id/plans/:planId': { summary: 'One plan', access: 'helper', params: PlanParams, response: Plan },
   'POST /studios/:studioId/batches/:id/plans/:planId/choose': {
     summary: 'Take an alternative of the plan', access: 'maker', params: PlanParams, body: z.object({ alternative: AlternativeKind }), response: Plan,

@@ -1,9 +1,9 @@
 import type { Batch, BatchCard, BatchLine, BatchState, FitRow, FitTable, Piece, Place } from '../../server/contract/batches.ts';
-import type { AlternativeKind, Plan, PlanNames, PlanRun, PlanSetup, PlanSummary, PinnedRun, StockCutting, Unplaced } from '../../server/contract/plans.ts';
+import type { AlternativeKind, Plan, PlanNames, PlanRun, PlanSetup, PlanSummary, PinnedRun, SheetComparison, StockCutting, Unplaced } from '../../server/contract/plans.ts';
 import { call } from './http.ts';
 import type { Body, Query } from './http.ts';
 
-export type { AlternativeKind, Batch, BatchCard, BatchLine, BatchState, FitRow, FitTable, Piece, PinnedRun, Place, Plan, PlanNames, PlanRun, PlanSetup, PlanSummary, StockCutting, Unplaced };
+export type { AlternativeKind, Batch, BatchCard, BatchLine, BatchState, FitRow, FitTable, Piece, PinnedRun, Place, Plan, PlanNames, PlanRun, PlanSetup, PlanSummary, SheetComparison, StockCutting, Unplaced };
 export type BatchEdit = Omit<Body<'PATCH /studios/:studioId/batches/:id'>, 'version'>;
 export type LineEdit = Omit<Body<'PATCH /studios/:studioId/batches/:id/lines/:lineId'>, 'version'>;
 export type ForAll = Body<'POST /studios/:studioId/batches/:id/for-all'>;
@@ -30,6 +30,7 @@ export const takeRecommendedDies = (studioId: string, id: string, onlyMissing: b
 export const listPlans = async (studioId: string, id: string): Promise<PlanSummary[]> => (await call('GET /studios/:studioId/batches/:id/plans', { params: { studioId, id } })).items;
 export const planBatch = (studioId: string, id: string, body: Body<'POST /studios/:studioId/batches/:id/plans'> = {}) => call('POST /studios/:studioId/batches/:id/plans', { params: { studioId, id }, body });
 export const stopPlanning = (studioId: string, id: string) => call('POST /studios/:studioId/batches/:id/plans/stop', { params: { studioId, id } });
+export const compareSheets = (studioId: string, id: string) => call('POST /studios/:studioId/batches/:id/sheet-sizes', { params: { studioId, id } });
 export const readPlan = (studioId: string, id: string, planId: string) => call('GET /studios/:studioId/batches/:id/plans/:planId', { params: { studioId, id, planId } });
 export const chooseAlternative = (studioId: string, id: string, planId: string, alternative: AlternativeKind) =>
   call('POST /studios/:studioId/batches/:id/plans/:planId/choose', { params: { studioId, id, planId }, body: { alternative } });

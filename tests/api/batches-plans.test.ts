@@ -177,6 +177,21 @@ describe('versions of a plan', () => {
   });
 });
 
+describe('run sheets', () => {
+  it('are tried as the cardstock gives them and the platform takes them, best for the aim first', async () => {
+    const batch = await ready('Sizes', { 'Thank you': 4, Hello: 4 }, { aim: 'sheets' });
+    const { jobId } = (await maker.post(`${base}/${batch.id}/sheet-sizes`).expect(202)).body;
+    const { state, result } = await kit.jobEnded(maker, jobId, 40_000);
+    expect(state).toBe('done');
+    const { items } = result as { items: { widthMm: number; heightMm: number; stockSheets: number; unplaced: number }[] };
+    expect(items.length).toBeGreaterThan(3);
+    // Corner top left and hinge left, so a sheet may hang over the right and the bottom: 215.9 × 279.4 lies there whole.
+    expect(items.some(({ widthMm, heightMm }) => widthMm === 215.9 && heightMm === 279.4)).toBe(true);
+    const whole = items.filter(({ unplaced }) => unplaced === 0).map(({ stockSheets }) => stockSheets);
+    expect(whole).toEqual([...whole].sort((a, b) => a - b));
+  });
+});
+
 describe('stopping a planning', () => {
   it('keeps the best so far', async () => {
     const batch = await ready('Stopped', { 'Thank you': 7, Hello: 5, 'With love': 3, 'Just a note': 9, 'Happy birthday': 4, Congratulations: 6 }, { turns: 'auto' });

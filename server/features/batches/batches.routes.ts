@@ -10,6 +10,7 @@ import { createFitService } from './fit.service.ts';
 import { createLineService } from './lines.service.ts';
 import { planBatchJob } from './plans.jobs.ts';
 import { createPlanService } from './plans.service.ts';
+import { compareSheetsJob } from './sheet-sizes.jobs.ts';
 import { createStockService } from './stock.service.ts';
 
 export function createBatches(deps: Deps): Feature {
@@ -22,7 +23,7 @@ export function createBatches(deps: Deps): Feature {
 
   return feature({
     table: { ...batchRoutes, ...planRoutes },
-    jobs: [planBatchJob(deps)] as JobDefinition[],
+    jobs: [planBatchJob(deps), compareSheetsJob(deps)] as JobDefinition[],
     handlers: {
       'GET /studios/:studioId/batches': ({ params, query }) => batches.list(params.studioId, query),
       'POST /studios/:studioId/batches': ({ params, body }) => batches.create(params.studioId, body),
@@ -44,6 +45,7 @@ export function createBatches(deps: Deps): Feature {
       'GET /studios/:studioId/batches/:id/plans': ({ params }) => plans.list(params.studioId, params.id),
       'POST /studios/:studioId/batches/:id/plans': (call) => plans.request(call.params.studioId, call.params.id, call.body, actor(call)),
       'POST /studios/:studioId/batches/:id/plans/stop': ({ params }) => plans.stop(params.studioId, params.id),
+      'POST /studios/:studioId/batches/:id/sheet-sizes': (call) => plans.compareSheets(call.params.studioId, call.params.id, actor(call)),
       'GET /studios/:studioId/batches/:id/plans/:planId': ({ params }) => plans.find(params.studioId, params.id, params.planId),
       'POST /studios/:studioId/batches/:id/plans/:planId/choose': (call) => plans.choose(call.params.studioId, call.params.id, call.params.planId, call.body.alternative, actor(call)),
       'GET /studios/:studioId/batches/:id/plans/:planId/stock': ({ params }) => stock.cutting(params.studioId, params.id, params.planId),

@@ -14,6 +14,7 @@ import { linesOfBatch } from './lines.queries.ts';
 import { planChanges } from './plan-changes.ts';
 import { sumTotals } from './plan-totals.ts';
 import { PLAN_BATCH } from './plans.jobs.ts';
+import { COMPARE_SHEETS } from './sheet-sizes.jobs.ts';
 import { insertPlan, listPlans, planById, planIdByNumber } from './plans.queries.ts';
 import type { StoredPlan, StoredRun } from './plans.queries.ts';
 
@@ -65,6 +66,13 @@ export function createPlanService({ db, jobs, events }: Deps) {
         if (jobId !== batch.plan_job_id) await setPlanJob(tx, studioId, batchId, jobId);
         await events.publish(tx, studioId, { type: 'changed', noun: 'batches', id: batchId });
         return { jobId };
+      }),
+
+    compareSheets: (studioId: string, batchId: string, by: Actor): Promise<{ jobId: string }> =>
+      db.transaction(async (tx) => {
+        const batch = await requiredBatch(tx, studioId, batchId);
+        if (batch.platform_id === null) throw conflict('no-platform', 'Choose a stamping platform first.');
+        return { jobId: await jobs.enqueue(tx, COMPARE_SHEETS, { batchId }, { studioId, subjectId: batchId, personId: by.id, singletonKey: `sheets:${batchId}` }) };
       }),
 
     async stop(studioId: string, batchId: string): Promise<void> {
